@@ -1,0 +1,11 @@
+import { z } from 'zod';
+
+/** RFC 9457 problem details, with `errors` for bad input. */
+export const problemSchema = z.object({
+  type: z.string(),
+  title: z.string(),
+  status: z.number().int(),
+  detail: z.string(),
+  errors: z.array(z.object({ path: z.string(), message: z.string() })).optional(),
+});
+export type Problem = z.infer<typeof problemSchema>;
