@@ -12,7 +12,6 @@ export const nameSchema = z
   .trim()
   .min(1, 'Give a name')
   .max(80, 'Use at most 80 characters')
-  // eslint-disable-next-line no-control-regex -- control characters are what is refused here
   .regex(/^[^\u0000-\u001f\u007f]*$/, 'Use one line without control characters');
 
 export const noteSchema = z.string().trim().max(2000, 'Use at most 2000 characters').default('');

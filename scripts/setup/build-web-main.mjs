@@ -1,0 +1,3 @@
+import { ensureWebBuilt } from './build-web.mjs';
+
+await ensureWebBuilt();
