@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { alarmCodes } from '../domain/alarm-codes.ts';
+import { alarmStates } from '../domain/alarm-life-cycle.ts';
 import { endpoint } from './endpoint.ts';
 import { idSchema, pageOf, pageQuerySchema, timestampSchema } from './fields.ts';
 import { prioritySchema } from './systems.ts';
@@ -7,18 +8,7 @@ import { prioritySchema } from './systems.ts';
 export const alarmCodeSchema = z.enum(alarmCodes);
 
 /** States in the words of ISA-18.2, with `latched` for an interlock whose cause is gone but which nobody reset. */
-export const alarmStates = [
-  'unacknowledged',
-  'acknowledged',
-  'returned',
-  'latched',
-  'shelved',
-  'suppressed',
-  'out-of-service',
-  'normal',
-] as const;
 export const alarmStateSchema = z.enum(alarmStates);
-export type AlarmState = z.infer<typeof alarmStateSchema>;
 
 export const alarmSchema = z.object({
   id: idSchema,
