@@ -13,9 +13,8 @@ export interface UserTable {
 export interface SessionTable {
   id: string;
   userId: string;
-  refreshHash: string;
-  /** The hash that was rotated away last: presenting it again within the grace is a second tab, later it is theft. */
-  previousRefreshHash: string | null;
+  /** How often the refresh token was rotated. The one of this generation is good; any older one is a second tab or theft. */
+  generation: number;
   rotatedAtMs: number;
   createdAtMs: number;
   expiresAtMs: number;
@@ -441,7 +440,7 @@ export interface AlarmRuleRevisionTable {
   actorId: string;
 }
 
-/** One row an occurrence, soft and hard apart. Closed when neither active, unacknowledged nor latched. */
+/** One row an occurrence, soft and hard apart. Closed when neither active, unacknowledged, latched nor shelved. */
 export interface AlarmTable {
   id: string;
   siteId: string;
@@ -464,6 +463,9 @@ export interface AlarmTable {
   evidence: string;
   takenBy: string | null;
   arriveAtMs: number | null;
+  /** What tripped it (a run, a whole system): the same cause trips again only with more volume in the ledger than `tripSeq`. */
+  tripKey: string;
+  tripSeq: number;
 }
 
 export interface AlarmTransitionTable {
@@ -511,6 +513,15 @@ export interface ChangeTable {
   payload: string;
 }
 
+/** Every id that a create was given or made, with the hash of its body: a repeated request is told from another one. */
+export interface ClaimedIdTable {
+  id: string;
+  siteId: string;
+  kind: string;
+  bodyHash: string;
+  createdAtMs: number;
+}
+
 export interface Database {
   user: UserTable;
   session: SessionTable;
@@ -552,6 +563,7 @@ export interface Database {
   dirtySystem: DirtySystemTable;
   job: JobTable;
   change: ChangeTable;
+  claimedId: ClaimedIdTable;
 }
 
 export type Row<Table extends keyof Database> = Selectable<Database[Table]>;

@@ -70,7 +70,8 @@ export const deviceEndpoints = {
     who: 'keeper',
     summary: 'Register a device; the password is shown this once',
     body: z.object({ id: clientIdSchema, name: nameSchema, kind: z.enum(['pump', 'probe', 'other']) }),
-    answer: z.object({ device: deviceSchema, credentials: credentialsSchema }),
+    /** The password is null when the request is repeated: it was shown once, and only its hash is kept. Renew it if it got lost. */
+    answer: z.object({ device: deviceSchema, credentials: credentialsSchema.extend({ password: z.string().nullable() }) }),
   }),
   renewCredentials: endpoint({
     method: 'post',

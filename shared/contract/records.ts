@@ -11,9 +11,8 @@ import {
   rangeTimeSchema,
   timestampSchema,
 } from './fields.ts';
-import { testUnits } from '../units/nutrient-units.ts';
+import { testQuantities, testUnits } from '../units/nutrient-units.ts';
 
-export const testQuantities = ['nitrate', 'phosphate', 'alkalinity', 'ammonia', 'nitrite'] as const;
 export const testQuantitySchema = z.enum(testQuantities);
 export type TestQuantity = z.infer<typeof testQuantitySchema>;
 
@@ -29,7 +28,10 @@ export const testSchema = z.object({
   /** As mg/L of the ion (alkalinity: as mg/L CaCO3). */
   canonicalMgPerL: z.number(),
   note: z.string(),
+  /** The name of who wrote it down. */
   by: z.string(),
+  /** Their user id: a sitter may change one's own tests only. */
+  byId: z.string(),
   edited: z.boolean(),
 });
 export type Test = z.infer<typeof testSchema>;
@@ -42,6 +44,9 @@ const testFieldsSchema = z.object({
   below: z.boolean().default(false),
   note: noteSchema,
 });
+
+/** Without defaults: a partial schema would fill them in and so change what was not sent. */
+const testChangesSchema = testFieldsSchema.extend({ below: z.boolean(), note: noteSchema.unwrap() }).partial();
 
 const importRowSchema = z.object({
   line: z.number().int(),
@@ -100,7 +105,7 @@ export const recordEndpoints = {
     path: '/tests/:testId',
     who: 'sitter',
     summary: "Correct a test: one's own, or as keeper anybody's; what it was is kept",
-    body: testFieldsSchema.partial(),
+    body: testChangesSchema,
     answer: testSchema,
   }),
   deleteTest: endpoint({

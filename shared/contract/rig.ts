@@ -32,6 +32,9 @@ const headFieldsSchema = z.object({
   smallestMl: z.number().positive('Give the smallest accurate portion, above 0 mL').max(1000),
 });
 
+/** Without defaults: a partial schema would fill them in and so take a head off its bottle unasked. */
+const headChangesSchema = headFieldsSchema.extend({ productId: idSchema.nullable(), reservoirId: idSchema.nullable() }).partial();
+
 export const reservoirSchema = z.object({
   id: idSchema,
   systemId: idSchema,
@@ -83,7 +86,7 @@ export const rigEndpoints = {
     path: '/heads/:headId',
     who: 'keeper',
     summary: 'Change what a head is used for, from now on; earlier runs keep what was in force',
-    body: headFieldsSchema.partial(),
+    body: headChangesSchema,
     answer: headSchema,
   }),
   listReservoirs: endpoint({

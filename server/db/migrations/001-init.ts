@@ -6,11 +6,10 @@ const statements = [
     id text primary key, email text not null unique, name text not null, passwordHash text not null, createdAtMs integer not null
   ) strict, without rowid`,
   `create table session (
-    id text primary key, userId text not null references user(id), refreshHash text not null unique, previousRefreshHash text,
+    id text primary key, userId text not null references user(id), generation integer not null,
     rotatedAtMs integer not null, createdAtMs integer not null, expiresAtMs integer not null, revokedAtMs integer, userAgent text not null
   ) strict, without rowid`,
   `create index sessionByUser on session(userId)`,
-  `create index sessionByPreviousHash on session(previousRefreshHash) where previousRefreshHash is not null`,
   `create table site (id text primary key, name text not null, timeZone text not null, createdAtMs integer not null) strict, without rowid`,
   `create table membership (
     siteId text not null references site(id), userId text not null references user(id),
@@ -175,7 +174,8 @@ const statements = [
     id text primary key, siteId text not null, systemId text not null references system(id), code text not null, target text not null,
     limitKind text not null, priority text not null, active integer not null, acknowledged integer not null, latched integer not null,
     interlock integer not null, shelvedUntilMs integer, raisedAtMs integer not null, returnedAtMs integer, closedAtMs integer, value real,
-    limitValue real, unit text not null, evidence text not null, takenBy text, arriveAtMs integer
+    limitValue real, unit text not null, evidence text not null, takenBy text, arriveAtMs integer, tripKey text not null,
+    tripSeq integer not null
   ) strict, without rowid`,
   `create index alarmBySystem on alarm(systemId, raisedAtMs)`,
   `create unique index alarmOpen on alarm(systemId, code, target, limitKind) where closedAtMs is null`,
@@ -196,6 +196,9 @@ const statements = [
     seq integer primary key autoincrement, systemId text not null, type text not null, atMs integer not null, payload text not null
   ) strict`,
   `create index changeByTime on change(atMs)`,
+  `create table claimedId (
+    id text primary key, siteId text not null, kind text not null, bodyHash text not null, createdAtMs integer not null
+  ) strict, without rowid`,
 ];
 
 export async function up(db: Kysely<unknown>): Promise<void> {
