@@ -26,6 +26,7 @@ export interface PlannedVolume {
 }
 
 interface UseRow {
+  systemId: string;
   headId: string;
   deviceId: string;
   head: number;
@@ -42,13 +43,13 @@ interface VersionRow {
 
 const schedulesSchema = z.string().transform((body) => schedulePayloadSchema.parse(JSON.parse(body)));
 
-/** When which head gave carbon to the system: assignments that overlap the window. */
-function usesOf(systemId: string, fromMs: number, toMs: number): Compilable<UseRow> {
+/** When which head gave carbon to the systems: assignments that overlap the window. */
+function usesOf(systemIds: string[], fromMs: number, toMs: number): Compilable<UseRow> {
   return query
     .selectFrom('headAssignment')
     .innerJoin('head', 'head.id', 'headAssignment.headId')
-    .select(['head.id as headId', 'head.deviceId', 'head.head', 'headAssignment.fromMs', 'headAssignment.toMs'])
-    .where('headAssignment.systemId', '=', systemId)
+    .select(['headAssignment.systemId', 'head.id as headId', 'head.deviceId', 'head.head', 'headAssignment.fromMs', 'headAssignment.toMs'])
+    .where('headAssignment.systemId', 'in', systemIds)
     .where('headAssignment.kind', '=', 'carbon')
     .where('headAssignment.fromMs', '<', toMs)
     .where((where) => where.or([where('headAssignment.toMs', 'is', null), where('headAssignment.toMs', '>', fromMs)]));
@@ -134,16 +135,39 @@ function assemble(uses: UseRow[], versions: VersionRow[]): PlannedVolume {
 
 /** Loads what was planned in (`fromMs`, `toMs`] inside a unit of work. Ask the answer only within that window. */
 export function plannedVolumeIn(tx: Transaction, systemId: string, fromMs: number, toMs: number): PlannedVolume {
-  const uses = tx.all(usesOf(systemId, fromMs, toMs));
+  const uses = tx.all(usesOf([systemId], fromMs, toMs));
   const deviceIds = [...new Set(uses.map((use) => use.deviceId))];
   return assemble(uses, deviceIds.length === 0 ? [] : tx.all(versionsOf(deviceIds, fromMs, toMs)));
 }
 
 /** Loads what was planned in (`fromMs`, `toMs`]. Ask the answer only within that window. */
 export async function readPlannedVolume(reader: Reader, systemId: string, fromMs: number, toMs: number): Promise<PlannedVolume> {
-  const { rows: uses } = await reader.executeQuery(usesOf(systemId, fromMs, toMs).compile());
+  const volumes = await readPlannedVolumes(reader, [systemId], fromMs, toMs);
+  return volumes.get(systemId) ?? assemble([], []);
+}
+
+/** The same for many systems at once, by system id: two queries however many they are. */
+export async function readPlannedVolumes(
+  reader: Reader,
+  systemIds: string[],
+  fromMs: number,
+  toMs: number,
+): Promise<Map<string, PlannedVolume>> {
+  const { rows: uses } = systemIds.length === 0 ? { rows: [] } : await reader.executeQuery(usesOf(systemIds, fromMs, toMs).compile());
   const deviceIds = [...new Set(uses.map((use) => use.deviceId))];
-  if (deviceIds.length === 0) return assemble(uses, []);
-  const { rows: versions } = await reader.executeQuery(versionsOf(deviceIds, fromMs, toMs).compile());
-  return assemble(uses, versions);
+  const { rows: versions } =
+    deviceIds.length === 0 ? { rows: [] } : await reader.executeQuery(versionsOf(deviceIds, fromMs, toMs).compile());
+  return new Map(
+    systemIds.map((systemId) => {
+      const own = uses.filter((use) => use.systemId === systemId);
+      const ownDeviceIds = new Set(own.map((use) => use.deviceId));
+      return [
+        systemId,
+        assemble(
+          own,
+          versions.filter((version) => ownDeviceIds.has(version.deviceId)),
+        ),
+      ];
+    }),
+  );
 }

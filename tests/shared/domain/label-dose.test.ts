@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { doseCeilingMlPerDay, labelDoseMlPerDay } from '#shared/domain/label-dose.ts';
+import { labelDoseMlPerDay } from '#shared/domain/label-dose.ts';
 import { productStrength } from '#shared/domain/product-strength.ts';
 
 const label = { ml: 2, maxMl: null, perLitres: 100, perDays: 1 };
@@ -13,26 +13,8 @@ describe('label dose', () => {
     expect(labelDoseMlPerDay({ ...label, perDays: 7 }, 420)).toBeCloseTo(1.2, 12);
   });
 
-  it('takes the lower end of a range as the dose, and its upper end as the ceiling', () => {
-    const range = { ...label, maxMl: 3 };
-    expect(labelDoseMlPerDay(range, 420)).toBeCloseTo(8.4, 12);
-    expect(doseCeilingMlPerDay({ label: range, carbonMgPerMl: null, netLitres: 420 })).toBeCloseTo(12.6, 12);
-  });
-});
-
-describe('the ceiling', () => {
-  it('is the label where the label names one dose', () => {
-    expect(doseCeilingMlPerDay({ label, carbonMgPerMl: 164.6, netLitres: 420 })).toBeCloseTo(8.4, 12);
-  });
-
-  it('is 3 mg of carbon per litre and day without a label', () => {
-    const strength = productStrength([{ substance: 'ethanol', percentByVolume: 40 }]);
-    const ceiling = doseCeilingMlPerDay({ label: null, carbonMgPerMl: strength?.carbonMgPerMl ?? null, netLitres: 420 });
-    expect(ceiling).toBeCloseTo((3 * 420) / 164.61, 2);
-  });
-
-  it.each([null, 0])('is unknown without a label when the carbon is %s', (carbonMgPerMl) => {
-    expect(doseCeilingMlPerDay({ label: null, carbonMgPerMl, netLitres: 420 })).toBeNull();
+  it('takes the lower end of a range', () => {
+    expect(labelDoseMlPerDay({ ...label, maxMl: 3 }, 420)).toBeCloseTo(8.4, 12);
   });
 });
 
