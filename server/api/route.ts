@@ -2,12 +2,7 @@ import type { Request, Response } from 'express';
 import type { AnswerOf, BodyOf, Endpoint, ParamsOf, QueryOf } from '#shared/contract/endpoint.ts';
 import type { EndpointName, endpoints } from '#shared/contract/endpoints.ts';
 import type { Role } from '#shared/domain/role.ts';
-
-/** Who is signed in; looked up at each request. */
-export interface Person {
-  userId: string;
-  sessionId: string;
-}
+import type { Person } from '../access/person.ts';
 
 /** What a handler gets once the request was checked: sign-in, membership, role, params, query and body. */
 export interface Call<E extends Endpoint> {

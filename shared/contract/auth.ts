@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { roleSchema } from '../domain/role.ts';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, timestampSchema } from './fields.ts';
+import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, timeZoneSchema, timestampSchema } from './fields.ts';
 
 export const emailSchema = z
   .email('Give an e-mail address')
@@ -77,7 +77,7 @@ export const authEndpoints = {
       name: nameSchema,
       password: newPasswordSchema,
       siteName: nameSchema,
-      timeZone: z.string().min(1).max(64),
+      timeZone: timeZoneSchema,
     }),
     answer: sessionGrantSchema,
   }),

@@ -6,6 +6,19 @@ export const idSchema = z.uuid();
 /** RFC 3339 with an offset. */
 export const timestampSchema = z.iso.datetime({ offset: true });
 
+/** An IANA zone that this JavaScript engine knows. */
+export const timeZoneSchema = z
+  .string()
+  .max(64)
+  .refine((zone) => {
+    try {
+      new Intl.DateTimeFormat('en', { timeZone: zone });
+      return true;
+    } catch {
+      return false;
+    }
+  }, 'Give an IANA time zone such as Europe/Lisbon');
+
 /** A name that a person gave: trimmed, one line, not empty. */
 export const nameSchema = z
   .string()

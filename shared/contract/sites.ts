@@ -2,20 +2,7 @@ import { z } from 'zod';
 import { roleSchema } from '../domain/role.ts';
 import { inviteBodySchema } from './auth.ts';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, pageQuerySchema, timestampSchema } from './fields.ts';
-
-/** An IANA zone that this JavaScript engine knows. */
-export const timeZoneSchema = z
-  .string()
-  .max(64)
-  .refine((zone) => {
-    try {
-      new Intl.DateTimeFormat('en', { timeZone: zone });
-      return true;
-    } catch {
-      return false;
-    }
-  }, 'Give an IANA time zone such as Europe/Lisbon');
+import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, pageQuerySchema, timeZoneSchema, timestampSchema } from './fields.ts';
 
 export const siteSchema = z.object({ id: idSchema, name: z.string(), timeZone: z.string(), role: roleSchema });
 export type Site = z.infer<typeof siteSchema>;

@@ -1,0 +1,54 @@
+import type { Problem } from '#shared/contract/problem.ts';
+import { BadInputError, ForbiddenError, NotFoundError, NotSignedInError, RuleError, TooManyError } from '../errors.ts';
+
+export interface ProblemAnswer {
+  body: Problem;
+  headers: Record<string, string>;
+}
+
+const titles: Record<number, string> = {
+  401: 'Not signed in',
+  403: 'Not allowed',
+  404: 'Not found',
+  409: 'A rule forbids it',
+  413: 'Too large',
+  415: 'Unsupported media type',
+  422: 'Bad input',
+  429: 'Too many requests',
+  500: 'Something went wrong here',
+  503: 'Not ready',
+};
+
+export function problemOfStatus(status: number, detail: string, more: Partial<Problem> = {}): ProblemAnswer {
+  // RFC 9457 4.2.1: `about:blank` says that the problem is what the status says.
+  const body = { type: 'about:blank', title: titles[status] ?? 'Error', status, detail, ...more };
+  return { body, headers: status === 401 ? { 'WWW-Authenticate': 'Bearer' } : {} };
+}
+
+/** What the body parser throws: it tells a status and whether its message may be shown. */
+function parserStatus(error: object): number | null {
+  if (!('expose' in error) || error.expose !== true || !('status' in error) || typeof error.status !== 'number') return null;
+  return error.status;
+}
+
+/** The one table from what was broken to what is answered. Null: it is a fault of the server's own. */
+export function problemOf(error: unknown): ProblemAnswer | null {
+  if (!(error instanceof Error)) return null;
+  const { message } = error;
+  if (error instanceof NotSignedInError) return problemOfStatus(401, message);
+  if (error instanceof ForbiddenError) return problemOfStatus(403, message);
+  if (error instanceof NotFoundError) return problemOfStatus(404, message);
+  if (error instanceof RuleError) return problemOfStatus(409, message, { rule: error.rule });
+  if (error instanceof BadInputError) return problemOfStatus(422, message, { errors: error.errors });
+  if (error instanceof TooManyError) {
+    const answer = problemOfStatus(429, message);
+    return { ...answer, headers: { 'Retry-After': String(error.retryAfterSeconds) } };
+  }
+  const status = parserStatus(error);
+  if (status === 413) return problemOfStatus(413, 'The body is larger than is taken here');
+  if (status === 415) return problemOfStatus(415, 'The character set or encoding of the body is not supported');
+  if (status !== null && status < 500) {
+    return problemOfStatus(422, 'The request cannot be read as JSON', { errors: [{ path: '', message: 'This is not JSON' }] });
+  }
+  return null;
+}
