@@ -359,6 +359,8 @@ export interface ScheduleVersionTable {
   cause: string;
   actorKind: ActorKind;
   actorId: string;
+  /** When the broker took it; null until then, so that a restart in between publishes it. */
+  publishedAtMs: number | null;
 }
 
 /** The dose set for one head: what a schedule version is made from. */

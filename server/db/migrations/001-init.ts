@@ -139,8 +139,10 @@ const statements = [
   `create index testRevisionByTest on testRevision(testId, seq)`,
   `create table scheduleVersion (
     deviceId text not null references device(id), version integer not null, siteId text not null, body text not null,
-    fromMs integer not null, cause text not null, actorKind text not null, actorId text not null, primary key (deviceId, version)
+    fromMs integer not null, cause text not null, actorKind text not null, actorId text not null, publishedAtMs integer,
+    primary key (deviceId, version)
   ) strict, without rowid`,
+  `create index scheduleVersionToPublish on scheduleVersion(deviceId) where publishedAtMs is null`,
   `create index scheduleVersionByTime on scheduleVersion(deviceId, fromMs)`,
   `create table headSchedule (
     id text primary key, siteId text not null, headId text not null references head(id), mlPerDay real not null, slotMl real not null,
