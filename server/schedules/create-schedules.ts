@@ -14,6 +14,8 @@ export interface Schedules {
   put(systemId: string, body: ScheduleBody, actor: Actor, role: Role): Promise<void>;
   /** {@link reviseSchedule} inside the caller's unit; the new version is published after its commit. */
   revise(tx: Transaction, revision: Revision): number | null;
+  /** To be called inside a unit that revised a schedule: it is published after its commit. */
+  request(): void;
   /** Publishes what the broker has not yet taken; resolves when it has. */
   publishDue(): Promise<void>;
   /** Publishes the newest version of every pump: for the start, since the broker keeps nothing over a restart. */
@@ -87,6 +89,7 @@ export function createSchedules(core: Core, publisher: DevicePublisher): Schedul
       if (version !== null) loop.request();
       return version;
     },
+    request: () => loop.request(),
     publishDue: () => loop.run(),
     republishAll() {
       isRepublishing = true;
