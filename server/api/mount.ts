@@ -1,4 +1,5 @@
 import { type RequestHandler, Router } from 'express';
+import type { Histogram } from 'prom-client';
 import type { z } from 'zod';
 import { type Endpoint, statusOf } from '#shared/contract/endpoint.ts';
 import { type EndpointName, endpoints } from '#shared/contract/endpoints.ts';
@@ -17,6 +18,7 @@ export interface MountOptions {
   authenticate(accessToken: string): Promise<Person>;
   /** Holds every answer to its schema; costs time, so for tests and development. */
   checkAnswers: boolean;
+  requestSeconds?: Histogram<'endpoint' | 'status'>;
 }
 
 /** A handler whose types were checked against its endpoint where it was written. */
@@ -46,6 +48,10 @@ function routeOf(name: EndpointName, handler: CheckedHandler, options: MountOpti
   const siteParameter = who === 'anyone' || who === 'signed-in' ? null : siteParameterOf(described);
 
   return async (request, response) => {
+    const startedMs = performance.now();
+    response.once('finish', () => {
+      options.requestSeconds?.observe({ endpoint: name, status: response.statusCode }, (performance.now() - startedMs) / 1000);
+    });
     const person = who === 'anyone' ? undefined : await options.authenticate(bearerOf(request));
     let site: Awaited<ReturnType<typeof siteOf>> = null;
     if (siteParameter !== null && person !== undefined) {

@@ -1,4 +1,5 @@
 import type { Request } from 'express';
+import { isOwnOrigin } from '../access/own-origin.ts';
 import { ForbiddenError } from '../errors.ts';
 
 /**
@@ -16,11 +17,4 @@ export function requireSameOrigin(request: Request, publicUrl: string | undefine
   if (origin !== undefined && !isOwnOrigin(origin, request.headers.host, publicUrl)) {
     throw new ForbiddenError('This is answered to pages of the app itself only');
   }
-}
-
-/** True when a page of that origin came from this server: same host and port as asked, or those of `PUBLIC_URL`. */
-export function isOwnOrigin(origin: string, host: string | undefined, publicUrl: string | undefined): boolean {
-  if (!URL.canParse(origin)) return false;
-  if (publicUrl !== undefined && new URL(publicUrl).origin === origin) return true;
-  return host !== undefined && new URL(origin).host === host;
 }

@@ -10,6 +10,7 @@ import type { Transaction } from '../db/writer.ts';
 import { BadInputError, NotFoundError, NotSignedInError, RuleError } from '../errors.ts';
 import { addSite } from '../sites/add-site.ts';
 import { createAttemptLimit } from './attempt-limit.ts';
+import { hashOfToken } from './hash-of-token.ts';
 import { createPasswordHasher } from './password-hasher.ts';
 import { createSessions, type OpenedSession, type Sessions } from './sessions.ts';
 import { addUser, hasUsers, userByEmail } from './users.ts';
@@ -49,10 +50,6 @@ interface WelcomeForm {
 
 const QUARTER_HOUR_MS = 15 * 60_000;
 const wrongPassword = 'The e-mail address or the password is wrong';
-
-export function hashOfToken(token: string): string {
-  return createHash('sha256').update(token).digest('hex');
-}
 
 function isSameCode(given: string, code: string): boolean {
   const digest = (text: string) => createHash('sha256').update(plainWelcomeCode(text)).digest();

@@ -50,6 +50,13 @@ export function pageOf<Item extends z.ZodType>(item: Item) {
 }
 
 /** A time range of a query: RFC 3339, or epoch milliseconds for chart columns. `from` inclusive, `to` exclusive. */
-export const rangeTimeSchema = z.union([timestampSchema.transform((text) => Date.parse(text)), z.coerce.number().int().nonnegative()]);
+export const rangeTimeSchema = z.union([
+  timestampSchema.transform((text) => Date.parse(text)),
+  z
+    .string()
+    .regex(/^\d{1,15}$/, 'Give an RFC 3339 time or epoch milliseconds')
+    .transform(Number),
+  z.number().int().nonnegative(),
+]);
 
 export const emptySchema = z.object({});

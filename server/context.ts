@@ -1,0 +1,76 @@
+import type { EndpointName } from '#shared/contract/endpoints.ts';
+import { createAccessChanges } from './access/access-changes.ts';
+import { authHandlers } from './api/auth.ts';
+import { deviceHandlers } from './api/devices.ts';
+import { liveHandlers } from './api/live.ts';
+import { productHandlers } from './api/products.ts';
+import { createRefreshCookie } from './api/refresh-cookie.ts';
+import { rigHandlers } from './api/rig.ts';
+import type { Handlers } from './api/route.ts';
+import { siteHandlers } from './api/sites.ts';
+import { systemHandlers } from './api/systems.ts';
+import { createAuth } from './auth/create-auth.ts';
+import { readJwtSecret } from './auth/jwt-secret.ts';
+import { makeWelcomeCode } from './auth/welcome-code.ts';
+import type { Core } from './core.ts';
+import { createDevices } from './devices/create-devices.ts';
+import { createJobs } from './jobs/create-jobs.ts';
+import { createLateBroker } from './late-broker.ts';
+import { createLive } from './live/create-live.ts';
+import { createNotify } from './notify/create-notify.ts';
+import { createSmtpMailer } from './notify/mailer.ts';
+import { createProducts } from './products/create-products.ts';
+import { createHeads } from './rig/create-heads.ts';
+import { createReservoirs } from './rig/create-reservoirs.ts';
+import { createSites } from './sites/create-sites.ts';
+import { createSystems } from './systems/create-systems.ts';
+
+export type Context = Awaited<ReturnType<typeof createContext>>;
+
+/** The first account is made with a code that only whoever sees the terminal knows. */
+async function welcomeCodeOf({ config, reader }: Core): Promise<string | null> {
+  if (config.DEMO) return null;
+  const anyone = await reader.selectFrom('user').select('id').limit(1).executeTakeFirst();
+  return anyone === undefined ? makeWelcomeCode() : null;
+}
+
+function mailerOf(smtpUrl: string | undefined, publicUrl: string) {
+  if (smtpUrl === undefined) return null;
+  return createSmtpMailer(smtpUrl, `Steadfall <steadfall@${new URL(publicUrl).hostname}>`);
+}
+
+/**
+ * Builds every service once, in the order in which they need each other.
+ * @param ownUrl where the server will be reached when `PUBLIC_URL` does not say.
+ */
+export async function createContext(core: Core, ownUrl: () => string) {
+  const { config } = core;
+  const publicUrl = () => (config.PUBLIC_URL ?? ownUrl()).replace(/\/$/, '');
+  const isSecure = config.TLS_CERT !== undefined || config.PUBLIC_URL?.startsWith('https:') === true;
+  const broker = createLateBroker();
+  const changes = createAccessChanges();
+  const welcomeCode = await welcomeCodeOf(core);
+
+  const auth = createAuth(core, { secret: readJwtSecret(config), welcomeCode }, changes);
+  const notify = createNotify(core, mailerOf(config.SMTP_URL, config.PUBLIC_URL ?? 'http://localhost'));
+  const sites = createSites({ core, changes, notify, publicUrl });
+  const systems = createSystems(core);
+  const products = createProducts(core);
+  const devices = createDevices({ core, disconnect: broker.disconnect });
+  const heads = createHeads({ core, headChanged: () => {} });
+  const reservoirs = createReservoirs(core);
+  const live = createLive(core, changes);
+  const jobs = createJobs(core);
+
+  const handlers: Partial<Handlers<EndpointName>> = {
+    ...authHandlers(auth, createRefreshCookie(isSecure), config.PUBLIC_URL),
+    ...siteHandlers(core, sites),
+    ...systemHandlers(systems),
+    ...productHandlers(products),
+    ...deviceHandlers(devices),
+    ...rigHandlers(heads, reservoirs),
+    ...liveHandlers(live),
+  };
+
+  return { core, publicUrl, welcomeCode, broker, auth, devices, notify, live, jobs, handlers };
+}
