@@ -1,4 +1,4 @@
-import { type ReferenceExpression, type RawBuilder, sql } from 'kysely';
+import { type RawBuilder, sql } from 'kysely';
 
 /** The place of a row in a list: what it is sorted by, then its id, which makes the order total. */
 export interface Position {
@@ -14,10 +14,6 @@ export interface PageRequest {
 }
 
 /** The rows that come after `position` in the order `key desc, id desc`. A row value, so that an index on `key` serves it. */
-export function comesAfter<DB, TB extends keyof DB>(
-  key: ReferenceExpression<DB, TB> & string,
-  id: ReferenceExpression<DB, TB> & string,
-  position: Position,
-): RawBuilder<boolean> {
+export function comesAfter(key: string, id: string, position: Position): RawBuilder<boolean> {
   return sql<boolean>`(${sql.ref(key)}, ${sql.ref(id)}) < (${position.key}, ${position.id})`;
 }

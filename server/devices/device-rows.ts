@@ -40,7 +40,6 @@ export function deviceRows() {
       select
         .selectFrom('scheduleVersion')
         .whereRef('scheduleVersion.deviceId', '=', 'device.id')
-        .orderBy('scheduleVersion.fromMs', 'desc')
         .orderBy('scheduleVersion.version', 'desc')
         .limit(1)
         .select('scheduleVersion.version')

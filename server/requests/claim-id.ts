@@ -30,6 +30,11 @@ export interface Claimed {
   isRepeated: boolean;
 }
 
+/** Told in the same words whatever the id stands for, and in whichever site. */
+export function idTaken(): RuleError {
+  return new RuleError('id-taken', 'This id is already in use with other content; send it with a new id');
+}
+
 function hashOf(claim: Claim): string {
   return createHash('sha256')
     .update(canonicalJson([claim.siteId, claim.kind, claim.body]))
@@ -49,16 +54,18 @@ export function claimId(tx: Transaction, claim: Claim): Claimed {
     tx.run(query.insertInto('claimedId').values({ id, siteId: claim.siteId, kind: claim.kind, bodyHash, createdAtMs: claim.nowMs }));
     return { id, isRepeated: false };
   }
-  if (earlier.bodyHash !== bodyHash) throw new RuleError('id-taken', 'This id is already in use with other content; send it with a new id');
+  if (earlier.bodyHash !== bodyHash) throw idTaken();
   return { id, isRepeated: true };
 }
 
 /** Lets a later request with the id of something that was deleted stand for it from now on. */
 export function renewClaim(tx: Transaction, claim: Claim & { id: string }): void {
+  const { id, siteId, kind, nowMs } = claim;
+  const bodyHash = hashOf(claim);
   tx.run(
     query
-      .updateTable('claimedId')
-      .set({ bodyHash: hashOf(claim) })
-      .where('id', '=', claim.id),
+      .insertInto('claimedId')
+      .values({ id, siteId, kind, bodyHash, createdAtMs: nowMs })
+      .onConflict((conflict) => conflict.column('id').doUpdateSet({ bodyHash })),
   );
 }

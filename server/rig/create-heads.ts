@@ -10,6 +10,7 @@ import type { Transaction } from '../db/writer.ts';
 import { BadInputError, NotFoundError, RuleError } from '../errors.ts';
 import { claimId } from '../requests/claim-id.ts';
 import type { Made } from '../requests/made.ts';
+import type { Schedules } from '../schedules/create-schedules.ts';
 import { checkUse, type HeadUse } from './head-use.ts';
 import { headOf, headRows } from './head-rows.ts';
 
@@ -23,21 +24,8 @@ export interface Heads {
   update(input: { siteId: string; headId: string; userId: string; body: UpdateBody }): Promise<Head>;
 }
 
-export interface HeadChange {
-  siteId: string;
-  deviceId: string;
-  headId: string;
-  userId: string;
-  nowMs: number;
-}
-
-export interface HeadsOptions {
-  core: Core;
-  /** Called in the unit that changes what a head is used for: its delivery rate stands in the pump's schedule. */
-  headChanged(tx: Transaction, change: HeadChange): void;
-}
-
-export function createHeads({ core, headChanged }: HeadsOptions): Heads {
+/** `schedules` brings a pump's schedule in line, in the same unit: the delivery rate of its heads stands in it. */
+export function createHeads(core: Core, schedules: Pick<Schedules, 'revise'>): Heads {
   async function get(headId: string): Promise<Head> {
     const [row] = await readRows(core.reader, headRows().where('head.id', '=', headId));
     if (row === undefined) throw new NotFoundError('There is no such head in your sites');
@@ -127,7 +115,7 @@ export function createHeads({ core, headChanged }: HeadsOptions): Heads {
         const nowMs = Math.max(core.clock.nowMs(), row.assignedMs);
         tx.run(query.updateTable('headAssignment').set({ toMs: nowMs }).where('id', '=', row.assignmentId));
         assign(tx, { siteId, systemId: row.systemId, headId, userId, fromMs: nowMs }, after);
-        headChanged(tx, { siteId, deviceId: row.deviceId, headId, userId, nowMs });
+        schedules.revise(tx, { deviceId: row.deviceId, cause: 'head', actor: { kind: 'user', id: userId }, nowMs });
         recordAudit(tx, {
           atMs: nowMs,
           siteId,

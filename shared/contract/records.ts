@@ -48,7 +48,7 @@ const testFieldsSchema = z.object({
 /** Without defaults: a partial schema would fill them in and so change what was not sent. */
 const testChangesSchema = testFieldsSchema.extend({ below: z.boolean(), note: noteSchema.unwrap() }).partial();
 
-const importRowSchema = z.object({
+export const importRowSchema = z.object({
   line: z.number().int(),
   fate: z.enum(['new', 'same', 'refused']),
   why: z.string().nullable(),
