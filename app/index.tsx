@@ -1,0 +1,3 @@
+import { RoundsScreen } from '../components/rounds/rounds-screen.tsx';
+
+export default RoundsScreen;

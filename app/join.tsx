@@ -1,0 +1,3 @@
+import { JoinScreen } from '../components/auth/join-screen.tsx';
+
+export default JoinScreen;

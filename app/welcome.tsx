@@ -1,0 +1,3 @@
+import { WelcomeScreen } from '../components/auth/welcome-screen.tsx';
+
+export default WelcomeScreen;

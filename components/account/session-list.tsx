@@ -1,0 +1,42 @@
+import { useEndSession, useSessions } from '../../hooks/use-me.ts';
+import { useNow } from '../../hooks/use-now.ts';
+import { browserWords } from '../../lib/format/browser.ts';
+import { formatAgo } from '../../lib/format/time.ts';
+import { Button } from '../ui/button.tsx';
+import { Heading } from '../ui/heading.tsx';
+import { Notice } from '../ui/notice.tsx';
+import { Skeleton } from '../ui/skeleton.tsx';
+import { Text } from '../ui/text.tsx';
+
+/** Where one is signed in, and the way to end each. */
+export function SessionList() {
+  const sessions = useSessions();
+  const end = useEndSession();
+  const nowMs = useNow(30_000);
+  const zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
+  return (
+    <section aria-label="Sessions">
+      <Heading level={2}>Where you are signed in</Heading>
+      {sessions.isError ? <Notice error={sessions.error} onRetry={() => void sessions.refetch()} /> : null}
+      {sessions.isPending ? <Skeleton lines={2} name="Loading sessions" /> : null}
+      <ul className="rounds">
+        {sessions.data?.map((session) => (
+          <li key={session.id} className="round">
+            <span className="round-head">
+              <Text>{browserWords(session.userAgent)}</Text>
+              {session.current ? (
+                <Text soft>this one</Text>
+              ) : (
+                <Button kind="quiet" name={`End session in ${browserWords(session.userAgent)}`} onPress={() => end.mutate(session.id)}>
+                  End
+                </Button>
+              )}
+            </span>
+            <Text variant="note" soft>{`used ${formatAgo(session.lastUsedAt, zone, nowMs)}`}</Text>
+          </li>
+        ))}
+      </ul>
+      {end.isError ? <Notice error={end.error} /> : null}
+    </section>
+  );
+}

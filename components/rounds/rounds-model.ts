@@ -1,0 +1,48 @@
+import type { System } from '#shared/contract/systems.ts';
+import { rankOf, type Rank } from '../../lib/sentences/system-rank.ts';
+import { systemSentence, type StaleSince } from '../../lib/sentences/system-sentence.ts';
+import type { StateMark } from '../ui/state-word.tsx';
+
+export interface Round {
+  id: string;
+  name: string;
+  siteName: string;
+  sentence: string;
+  rank: Rank;
+  mark: StateMark;
+  word: string;
+}
+
+const marks: Record<Rank, { mark: StateMark; word: string }> = {
+  urgent: { mark: 'urgent', word: 'urgent' },
+  alarm: { mark: 'due', word: 'alarm' },
+  unheard: { mark: 'unknown', word: 'unheard' },
+  due: { mark: 'due', word: 'due' },
+  quiet: { mark: 'fine', word: 'quiet' },
+};
+
+/** What the list says of a system. Nothing is quiet while we cannot tell. */
+export function roundOf(system: System, nowMs: number, staleSinceMs: StaleSince): Round {
+  const rank = rankOf(system.status, nowMs);
+  const shown = staleSinceMs !== null && rank !== 'urgent' ? marks.unheard : marks[rank];
+  return {
+    id: system.id,
+    name: system.name,
+    siteName: system.siteName,
+    sentence: systemSentence(system, nowMs, staleSinceMs),
+    rank,
+    ...shown,
+  };
+}
+
+/** The systems in the order that is shown, new ones at the end, and how many stand elsewhere than the server would put them. */
+export function inShownOrder<Item extends { id: string }>(
+  shownIds: readonly string[],
+  items: readonly Item[],
+): { shown: Item[]; moved: number } {
+  const known = shownIds.map((id) => items.find((item) => item.id === id)).filter((item): item is Item => item !== undefined);
+  const added = items.filter((item) => !shownIds.includes(item.id));
+  const shown = [...known, ...added];
+  const moved = shown.filter((item, index) => items[index]?.id !== item.id).length;
+  return { shown, moved };
+}

@@ -1,0 +1,23 @@
+import { useCallback, useSyncExternalStore } from 'react';
+
+/** Whether a media query holds, kept up to date. */
+export function useMedia(query: string): boolean {
+  const subscribe = useCallback(
+    (listener: () => void) => {
+      const media = window.matchMedia(query);
+      media.addEventListener('change', listener);
+      return () => media.removeEventListener('change', listener);
+    },
+    [query],
+  );
+  return useSyncExternalStore(
+    subscribe,
+    () => window.matchMedia(query).matches,
+    () => false,
+  );
+}
+
+/** True when the reader asked for less motion. */
+export function useReducedMotion(): boolean {
+  return useMedia('(prefers-reduced-motion: reduce)');
+}
