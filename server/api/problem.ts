@@ -1,5 +1,5 @@
 import type { Problem } from '#shared/contract/problem.ts';
-import { BadInputError, ForbiddenError, NotFoundError, NotSignedInError, RuleError, TooManyError } from '../errors.ts';
+import { BadInputError, type FieldError, ForbiddenError, NotFoundError, NotSignedInError, RuleError, TooManyError } from '../errors.ts';
 
 export interface ProblemAnswer {
   body: Problem;
@@ -25,6 +25,12 @@ export function problemOfStatus(status: number, detail: string, more: Partial<Pr
   return { body, headers: status === 401 ? { 'WWW-Authenticate': 'Bearer' } : {} };
 }
 
+/** The detail is a sentence for a person who sees no fields; `errors` say where. */
+function badInput(errors: FieldError[]): ProblemAnswer {
+  const messages = new Set(errors.map((error) => error.message));
+  return problemOfStatus(422, [...messages].join('; '), { errors });
+}
+
 /** What the body parser throws: it tells a status and whether its message may be shown. */
 function parserStatus(error: object): number | null {
   if (!('expose' in error) || error.expose !== true || !('status' in error) || typeof error.status !== 'number') return null;
@@ -39,7 +45,7 @@ export function problemOf(error: unknown): ProblemAnswer | null {
   if (error instanceof ForbiddenError) return problemOfStatus(403, message);
   if (error instanceof NotFoundError) return problemOfStatus(404, message);
   if (error instanceof RuleError) return problemOfStatus(409, message, { rule: error.rule });
-  if (error instanceof BadInputError) return problemOfStatus(422, message, { errors: error.errors });
+  if (error instanceof BadInputError) return badInput(error.errors);
   if (error instanceof TooManyError) {
     const answer = problemOfStatus(429, message);
     return { ...answer, headers: { 'Retry-After': String(error.retryAfterSeconds) } };
@@ -47,8 +53,6 @@ export function problemOf(error: unknown): ProblemAnswer | null {
   const status = parserStatus(error);
   if (status === 413) return problemOfStatus(413, 'The body is larger than is taken here');
   if (status === 415) return problemOfStatus(415, 'The character set or encoding of the body is not supported');
-  if (status !== null && status < 500) {
-    return problemOfStatus(422, 'The request cannot be read as JSON', { errors: [{ path: '', message: 'This is not JSON' }] });
-  }
+  if (status !== null && status < 500) return badInput([{ path: '', message: 'The body cannot be read as JSON' }]);
   return null;
 }

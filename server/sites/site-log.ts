@@ -1,7 +1,7 @@
 import type { PageRequest } from '../db/seek.ts';
 import { comesAfter } from '../db/seek.ts';
 import type { Reader } from '../db/open.ts';
-import type { Database, Row } from '../db/schema.ts';
+import type { Row } from '../db/schema.ts';
 
 export type AuditRow = Row<'audit'> & { actorName: string | null };
 
@@ -29,6 +29,6 @@ export async function outboxOfSite(reader: Reader, siteId: string, page: PageReq
     .orderBy('createdAtMs', 'desc')
     .orderBy('id', 'desc')
     .limit(page.limit);
-  if (page.after !== null) list = list.where(comesAfter<Database, 'notice'>('createdAtMs', 'id', page.after));
+  if (page.after !== null) list = list.where(comesAfter('createdAtMs', 'id', page.after));
   return list.execute();
 }
