@@ -27,56 +27,66 @@ const RETRY_EVERY_MS = 1_000;
 
 /** Doses by schedule, from the person who sets them to the retained message of each pump. */
 export function createSchedules(core: Core, publisher: DevicePublisher): Schedules {
-  async function publish({ deviceId, version, body }: { deviceId: string; version: number; body: string }): Promise<void> {
-    await publisher.publish(topicOf(deviceId, 'schedule'), body, { retain: true, qos: 1 });
-    const nowMs = core.clock.nowMs();
-    await core.writer.commit((tx) =>
-      tx.run(
-        query
-          .updateTable('scheduleVersion')
-          .set({ publishedAtMs: nowMs })
-          .where('deviceId', '=', deviceId)
-          .where('version', '<=', version)
-          .where('publishedAtMs', 'is', null),
-      ),
-    );
-  }
+  /** Pumps whose newest schedule goes out again although the broker had it before. */
+  const toRepublish = new Set<string>();
+  /** One publication a pump at a time, so that no older version ever follows a newer one; none waits for another pump. */
+  const underWay = new Map<string, Promise<void>>();
+  /** Pumps that got a newer version while one was under way. */
+  const behind = new Set<string>();
 
-  const newestOf = (deviceId: string) =>
-    core.reader
+  async function publishNewest(deviceId: string): Promise<void> {
+    const { version, body } = await core.reader
       .selectFrom('scheduleVersion')
-      .select(['deviceId', 'version', 'body'])
+      .select(['version', 'body'])
       .where('deviceId', '=', deviceId)
       .orderBy('version', 'desc')
       .limit(1)
       .executeTakeFirstOrThrow();
-
-  async function publishNewest(deviceIds: string[]): Promise<void> {
-    // One pump whose message is not taken keeps no other from getting its own.
-    const results = await Promise.allSettled(deviceIds.map(async (deviceId) => publish(await newestOf(deviceId))));
-    const failures = results.flatMap((result): unknown[] => (result.status === 'rejected' ? [result.reason] : []));
-    if (failures.length > 0) throw new AggregateError(failures, 'Schedules could not be published');
+    await publisher.publish(topicOf(deviceId, 'schedule'), body, { retain: true, qos: 1 });
+    toRepublish.delete(deviceId);
+    const nowMs = core.clock.nowMs();
+    const markPublished = query
+      .updateTable('scheduleVersion')
+      .set({ publishedAtMs: nowMs })
+      .where('deviceId', '=', deviceId)
+      .where('version', '<=', version)
+      .where('publishedAtMs', 'is', null);
+    await core.writer.commit((tx) => tx.run(markPublished));
   }
 
-  /** Set at the start, and cleared only once every pump's schedule was taken. */
-  let isRepublishing = false;
-
-  async function publishPending(): Promise<void> {
-    const everything = isRepublishing;
-    const all = core.reader.selectFrom('scheduleVersion').select('deviceId').distinct();
-    const rows = await (everything ? all : all.where('publishedAtMs', 'is', null)).execute();
-    await publishNewest(rows.map((row) => row.deviceId));
-    if (everything) isRepublishing = false;
+  function start(deviceId: string): void {
+    const publication = publishNewest(deviceId)
+      .catch((error: unknown) => core.log.error({ error, deviceId }, 'A schedule could not be published, and is tried again'))
+      .finally(() => {
+        underWay.delete(deviceId);
+        if (behind.delete(deviceId)) void loop.run();
+      });
+    underWay.set(deviceId, publication);
   }
 
-  // One loop for both, so that no older version is ever published after a newer one.
   const loop = createWorkLoop({
     name: 'Publishing schedules',
     writer: core.writer,
     log: core.log,
     everyMs: RETRY_EVERY_MS,
-    work: publishPending,
+    async work() {
+      const due = await core.reader
+        .selectFrom('scheduleVersion')
+        .select('deviceId')
+        .distinct()
+        .where('publishedAtMs', 'is', null)
+        .execute();
+      for (const deviceId of new Set([...due.map((row) => row.deviceId), ...toRepublish])) {
+        if (underWay.has(deviceId)) behind.add(deviceId);
+        else start(deviceId);
+      }
+    },
   });
+
+  async function publishDue(): Promise<void> {
+    await loop.run();
+    await Promise.all(underWay.values());
+  }
 
   return {
     put: (systemId, body, actor, role) =>
@@ -90,10 +100,11 @@ export function createSchedules(core: Core, publisher: DevicePublisher): Schedul
       return version;
     },
     request: () => loop.request(),
-    publishDue: () => loop.run(),
-    republishAll() {
-      isRepublishing = true;
-      return loop.run();
+    publishDue,
+    async republishAll() {
+      const rows = await core.reader.selectFrom('scheduleVersion').select('deviceId').distinct().execute();
+      for (const row of rows) toRepublish.add(row.deviceId);
+      await publishDue();
     },
     close: () => loop.close(),
   };
