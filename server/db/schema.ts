@@ -125,7 +125,13 @@ export interface DeviceStateTable {
   clockUnset: number;
   /** JSON array of `{head, state, odometerMl, odometerEpoch}` as last reported. */
   heads: string;
-  ignoredFields: number;
+}
+
+/** How often a device sent a SenML field that is not kept. */
+export interface IgnoredFieldTable {
+  deviceId: string;
+  field: string;
+  count: number;
 }
 
 export interface ProductTable {
@@ -536,6 +542,7 @@ export interface Database {
   event: EventTable;
   device: DeviceTable;
   deviceState: DeviceStateTable;
+  ignoredField: IgnoredFieldTable;
   product: ProductTable;
   productRevision: ProductRevisionTable;
   reservoir: ReservoirTable;

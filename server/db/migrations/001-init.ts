@@ -46,7 +46,10 @@ const statements = [
   `create index deviceBySystem on device(systemId)`,
   `create table deviceState (
     deviceId text primary key references device(id), online integer not null, heardAtMs integer not null, changedAtMs integer not null,
-    scheduleVersion integer, clockOffsetMs integer, clockUnset integer not null, heads text not null, ignoredFields integer not null
+    scheduleVersion integer, clockOffsetMs integer, clockUnset integer not null, heads text not null
+  ) strict, without rowid`,
+  `create table ignoredField (
+    deviceId text not null references device(id), field text not null, count integer not null, primary key (deviceId, field)
   ) strict, without rowid`,
   `create table product (
     id text primary key, siteId text not null references site(id), name text not null, form text not null, createdAtMs integer not null
