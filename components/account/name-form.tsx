@@ -4,16 +4,15 @@ import { fieldError, isSaidAtFields } from '../../lib/field-errors.ts';
 import { Button } from '../ui/button.tsx';
 import { Field } from '../ui/field.tsx';
 import { Form } from '../ui/form.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { LiveRegion } from '../ui/live-region.tsx';
 import { Notice } from '../ui/notice.tsx';
+import { Section } from '../ui/section.tsx';
 
 export function NameForm({ name }: { name: string }) {
   const update = useUpdateMe();
   const [typed, setTyped] = useState(name);
   return (
-    <section aria-label="Name">
-      <Heading level={2}>Name</Heading>
+    <Section title="Name">
       <Form onSubmit={() => update.mutate({ name: typed })}>
         {update.isError && !isSaidAtFields(update.error) ? <Notice error={update.error} /> : null}
         <Field
@@ -31,6 +30,6 @@ export function NameForm({ name }: { name: string }) {
         </div>
         <LiveRegion>{update.isSuccess ? 'Name saved.' : null}</LiveRegion>
       </Form>
-    </section>
+    </Section>
   );
 }

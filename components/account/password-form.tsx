@@ -4,9 +4,9 @@ import { fieldError, isSaidAtFields } from '../../lib/field-errors.ts';
 import { Button } from '../ui/button.tsx';
 import { Field } from '../ui/field.tsx';
 import { Form } from '../ui/form.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { LiveRegion } from '../ui/live-region.tsx';
 import { Notice } from '../ui/notice.tsx';
+import { Section } from '../ui/section.tsx';
 
 export function PasswordForm() {
   const change = useChangePassword();
@@ -24,8 +24,7 @@ export function PasswordForm() {
     );
   }
   return (
-    <section aria-label="Password">
-      <Heading level={2}>Password</Heading>
+    <Section title="Password">
       <Form onSubmit={save}>
         {change.isError && !isSaidAtFields(change.error) ? <Notice error={change.error} /> : null}
         <Field
@@ -52,6 +51,6 @@ export function PasswordForm() {
         </div>
         <LiveRegion>{change.isSuccess ? 'Password changed; every other session has ended.' : null}</LiveRegion>
       </Form>
-    </section>
+    </Section>
   );
 }

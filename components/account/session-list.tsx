@@ -3,10 +3,10 @@ import { useNow } from '../../hooks/use-now.ts';
 import { browserWords } from '../../lib/format/browser.ts';
 import { formatAgo } from '../../lib/format/time.ts';
 import { Button } from '../ui/button.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
+import { Section } from '../ui/section.tsx';
 
 /** Where one is signed in, and the way to end each. */
 export function SessionList() {
@@ -15,8 +15,7 @@ export function SessionList() {
   const nowMs = useNow(30_000);
   const zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
   return (
-    <section aria-label="Sessions">
-      <Heading level={2}>Where you are signed in</Heading>
+    <Section title="Where you are signed in">
       {sessions.isError ? <Notice error={sessions.error} onRetry={() => void sessions.refetch()} /> : null}
       {sessions.isPending ? <Skeleton lines={2} name="Loading sessions" /> : null}
       <ul className="rounds">
@@ -37,6 +36,6 @@ export function SessionList() {
         ))}
       </ul>
       {end.isError ? <Notice error={end.error} /> : null}
-    </section>
+    </Section>
   );
 }

@@ -1,8 +1,8 @@
 import { useOutbox, useOutboxActions } from '../../hooks/use-outbox.ts';
 import type { WaitingCall } from '../../lib/outbox.ts';
 import { Button } from '../ui/button.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { Text } from '../ui/text.tsx';
+import { Section } from '../ui/section.tsx';
 
 const names: Record<WaitingCall, string> = {
   createTest: 'A test',
@@ -19,8 +19,7 @@ export function WaitingEntries() {
   const { sendNow, discard } = useOutboxActions();
   if (entries.length === 0) return null;
   return (
-    <section aria-label="Waiting to be sent">
-      <Heading level={2}>Waiting to be sent</Heading>
+    <Section title="Waiting to be sent">
       <ul className="rounds">
         {entries.map((entry) => (
           <li key={entry.id} className="round">
@@ -37,6 +36,6 @@ export function WaitingEntries() {
         ))}
       </ul>
       <Button onPress={sendNow}>Send now</Button>
-    </section>
+    </Section>
   );
 }

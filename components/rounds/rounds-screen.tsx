@@ -7,6 +7,7 @@ import { EmptyState } from '../ui/empty-state.tsx';
 import { Heading } from '../ui/heading.tsx';
 import { LinkText } from '../ui/link-text.tsx';
 import { Notice } from '../ui/notice.tsx';
+import { Section } from '../ui/section.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
 import { RoundsList } from './rounds-list.tsx';
@@ -45,8 +46,7 @@ export function RoundsScreen() {
         </EmptyState>
       ) : null}
       {query.data !== undefined && me.data !== undefined ? (
-        <nav aria-label="Sites">
-          <Heading level={2}>Sites</Heading>
+        <Section title="Sites">
           {me.data.memberships.map((membership) => (
             <div key={membership.siteId}>
               <LinkText href={`/sites/${membership.siteId}`} block>
@@ -54,7 +54,7 @@ export function RoundsScreen() {
               </LinkText>
             </div>
           ))}
-        </nav>
+        </Section>
       ) : null}
     </Page>
   );

@@ -6,18 +6,17 @@ import { fieldError, isSaidAtFields } from '../../lib/field-errors.ts';
 import { Button } from '../ui/button.tsx';
 import { Field } from '../ui/field.tsx';
 import { Form } from '../ui/form.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { LiveRegion } from '../ui/live-region.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { RadioGroup } from '../ui/radio-group.tsx';
+import { Section } from '../ui/section.tsx';
 
 export function InviteForm({ siteId }: { siteId: string }) {
   const invite = useInvite(siteId);
   const [email, setEmail] = useState('');
   const [role, setRole] = useState<Role>('sitter');
   return (
-    <section aria-label="Invite">
-      <Heading level={2}>Invite somebody</Heading>
+    <Section title="Invite somebody">
       <Form onSubmit={() => invite.mutate({ email, role }, { onSuccess: () => setEmail('') })}>
         {invite.isError && !isSaidAtFields(invite.error) ? <Notice error={invite.error} /> : null}
         <Field label="E-mail" type="email" value={email} onChange={setEmail} error={fieldError(invite.error, 'email')} />
@@ -34,6 +33,6 @@ export function InviteForm({ siteId }: { siteId: string }) {
         </div>
         <LiveRegion>{invite.isSuccess ? `Invited ${invite.data.email} as ${invite.data.role}.` : null}</LiveRegion>
       </Form>
-    </section>
+    </Section>
   );
 }

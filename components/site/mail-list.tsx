@@ -1,8 +1,8 @@
 import { useMail } from '../../hooks/use-sites.ts';
-import { Heading } from '../ui/heading.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
+import { Section } from '../ui/section.tsx';
 
 const stateWords = { waiting: 'waiting', sent: 'sent', kept: 'kept here: no mail server is set', failed: 'could not be sent' } as const;
 
@@ -10,8 +10,7 @@ const stateWords = { waiting: 'waiting', sent: 'sent', kept: 'kept here: no mail
 export function MailList({ siteId }: { siteId: string }) {
   const mail = useMail(siteId, true);
   return (
-    <section aria-label="Mail">
-      <Heading level={2}>Mail</Heading>
+    <Section title="Mail">
       {mail.isError ? <Notice error={mail.error} onRetry={() => void mail.refetch()} /> : null}
       {mail.isPending ? <Skeleton lines={2} name="Loading mail" /> : null}
       {mail.data?.length === 0 ? <Text soft>No mail yet. Invitations and alarms appear here.</Text> : null}
@@ -28,6 +27,6 @@ export function MailList({ siteId }: { siteId: string }) {
           </li>
         ))}
       </ul>
-    </section>
+    </Section>
   );
 }

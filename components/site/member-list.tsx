@@ -1,11 +1,11 @@
 import { roles, type Role } from '#shared/domain/role.ts';
 import { useMembers, useRemoveMember, useSetRole } from '../../hooks/use-sites.ts';
 import { Button } from '../ui/button.tsx';
-import { Heading } from '../ui/heading.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Select } from '../ui/select.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
+import { Section } from '../ui/section.tsx';
 
 export const roleOptions = roles.map((role) => ({ value: role, label: role }));
 
@@ -14,8 +14,7 @@ export function MemberList({ siteId, isOwner, myId }: { siteId: string; isOwner:
   const setRole = useSetRole(siteId);
   const remove = useRemoveMember(siteId);
   return (
-    <section aria-label="Members">
-      <Heading level={2}>Members</Heading>
+    <Section title="Members">
       {members.isError ? <Notice error={members.error} onRetry={() => void members.refetch()} /> : null}
       {members.isPending ? <Skeleton lines={3} name="Loading members" /> : null}
       <ul className="rounds">
@@ -49,6 +48,6 @@ export function MemberList({ siteId, isOwner, myId }: { siteId: string; isOwner:
       </ul>
       {setRole.isError ? <Notice error={setRole.error} /> : null}
       {remove.isError ? <Notice error={remove.error} /> : null}
-    </section>
+    </Section>
   );
 }

@@ -12,6 +12,7 @@ import { AddSystem } from './add-system.tsx';
 import { InviteForm } from './invite-form.tsx';
 import { MailList } from './mail-list.tsx';
 import { MemberList } from './member-list.tsx';
+import { Section } from '../ui/section.tsx';
 
 /** A site: its systems, who has a role in it, and the mail that it sent. */
 export function SiteScreen({ siteId }: { siteId: string }) {
@@ -48,8 +49,7 @@ export function SiteScreen({ siteId }: { siteId: string }) {
         <Heading level={1}>{membership.siteName}</Heading>
         <Text soft>{`You are ${membership.role} here.`}</Text>
       </div>
-      <section aria-label="Systems">
-        <Heading level={2}>Systems</Heading>
+      <Section title="Systems">
         {here.length === 0 && systems.isSuccess ? <Text soft>No system yet.</Text> : null}
         {here.map((system) => (
           <div key={system.id}>
@@ -57,7 +57,7 @@ export function SiteScreen({ siteId }: { siteId: string }) {
           </div>
         ))}
         {isAtLeast(membership.role, 'keeper') ? <AddSystem siteId={siteId} /> : null}
-      </section>
+      </Section>
       <MemberList siteId={siteId} isOwner={isOwner} myId={me.data.id} />
       {isOwner ? <InviteForm siteId={siteId} /> : null}
       {isOwner ? <MailList siteId={siteId} /> : null}

@@ -1,4 +1,4 @@
-import type { ReactNode } from 'react';
+import { createContext, useContext, type ReactNode } from 'react';
 import { StyleSheet, Text as NativeText, type TextProps as NativeTextProps } from 'react-native';
 import { color } from '../../constants/color.ts';
 import { fonts } from '../../constants/fonts.ts';
@@ -6,6 +6,7 @@ import { typeScale, type TextVariant } from '../../constants/type-scale.ts';
 
 export interface TextProps extends Omit<NativeTextProps, 'style'> {
   children: ReactNode;
+  /** The size; a nested text without one keeps the size around it. */
   variant?: TextVariant;
   /** Secondary text. */
   soft?: boolean;
@@ -17,14 +18,19 @@ export interface TextProps extends Omit<NativeTextProps, 'style'> {
   inherit?: boolean;
 }
 
-/** Text in the styles of the type scale; plain ink unless said otherwise. */
-export function Text({ children, variant = 'body', soft, bold, figures, align, inherit, ...rest }: TextProps) {
+const InsideText = createContext(false);
+
+/** Text in the styles of the type scale; plain ink unless said otherwise. A line of its own, or a part of the text it stands in. */
+export function Text({ children, variant, soft, bold, figures, align, inherit, ...rest }: TextProps) {
+  const isInside = useContext(InsideText);
+  const scale = variant ?? (isInside ? undefined : 'body');
   return (
     <NativeText
       {...rest}
       style={[
-        styles.base,
-        typeScale[variant],
+        !isInside && styles.line,
+        !isInside && styles.ink,
+        scale !== undefined && typeScale[scale],
         soft === true && styles.soft,
         bold === true && styles.bold,
         figures === true && styles.figures,
@@ -32,13 +38,15 @@ export function Text({ children, variant = 'body', soft, bold, figures, align, i
         inherit === true && styles.inherit,
       ]}
     >
-      {children}
+      <InsideText value>{children}</InsideText>
     </NativeText>
   );
 }
 
 const styles = StyleSheet.create({
-  base: { color: color.ink },
+  // React Native's types know no block; between elements of the page's own a line of text must be one.
+  line: { display: 'block' as 'flex' },
+  ink: { color: color.ink },
   soft: { color: color.inkSoft },
   bold: { fontWeight: '700' },
   figures: { fontFamily: fonts.figures, fontVariant: ['tabular-nums'] },
