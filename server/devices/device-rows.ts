@@ -7,7 +7,7 @@ import type { Row } from '../db/schema.ts';
 const headsSchema = z.array(reportedHeadSchema);
 
 /** What a device last said of itself, in its REST shape. */
-export function deviceStateOf(row: Omit<Row<'deviceState'>, 'ignoredFields'>): DeviceState {
+export function deviceStateOf(row: Row<'deviceState'>): DeviceState {
   return {
     deviceId: row.deviceId,
     online: row.online === 1,
