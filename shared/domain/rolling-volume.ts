@@ -34,12 +34,13 @@ export function volumeTimeline(entries: readonly VolumeAt[]): VolumeTimeline {
 
 /**
  * When a delivery counts: a scheduled portion at its due time, on both sides of the comparison; everything else at its own.
- * A run that claims a due time it did not begin at (a pump may be wrong about that) counts at its own, or a burst could
- * hide in a window that closed long ago.
+ * What a run gives although it did not begin when it claims to have been due (a pump may be wrong about that), or long
+ * after, counts at its own time: else a burst or a motor that never stops could hide in a window that closed long ago.
  */
 export function countedAtMs(delivery: { atMs: number; begunMs: number; dueMs: number | null }): number {
   const { atMs, begunMs, dueMs } = delivery;
-  return dueMs !== null && Math.abs(begunMs - dueMs) <= 2 * SLOT_GRACE_MS ? dueMs : atMs;
+  if (dueMs === null || Math.abs(begunMs - dueMs) > 2 * SLOT_GRACE_MS) return atMs;
+  return Math.abs(atMs - dueMs) <= OPEN_WINDOW_MS ? dueMs : atMs;
 }
 
 /**

@@ -53,6 +53,12 @@ describe('the time at which a delivery counts', () => {
   });
 });
 
+it('what a run still gives long after its due time counts when it is given', () => {
+  const atMs = nowMs + OPEN_WINDOW_MS + 1;
+  expect(countedAtMs({ atMs, begunMs: nowMs, dueMs: nowMs })).toBe(atMs);
+  expect(countedAtMs({ atMs: atMs - 1, begunMs: nowMs, dueMs: nowMs })).toBe(nowMs);
+});
+
 describe('the windows that still count', () => {
   it('end now and at each instant of the last ten minutes', () => {
     const openFromMs = nowMs - OPEN_WINDOW_MS;
