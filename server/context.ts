@@ -16,7 +16,7 @@ import type { Core } from './core.ts';
 import { createDevices } from './devices/create-devices.ts';
 import { createJobs } from './jobs/create-jobs.ts';
 import { createLateBroker } from './late-broker.ts';
-import { createLive } from './live/create-live.ts';
+import { createLive, type LiveOptions } from './live/create-live.ts';
 import { createNotify } from './notify/create-notify.ts';
 import { createSmtpMailer } from './notify/mailer.ts';
 import { createProducts } from './products/create-products.ts';
@@ -39,13 +39,16 @@ function mailerOf(smtpUrl: string | undefined, publicUrl: string) {
   return createSmtpMailer(smtpUrl, `Steadfall <steadfall@${new URL(publicUrl).hostname}>`);
 }
 
-/**
- * Builds every service once, in the order in which they need each other.
- * @param ownUrl where the server will be reached when `PUBLIC_URL` does not say.
- */
-export async function createContext(core: Core, ownUrl: () => string) {
+export interface ContextOptions {
+  /** Where the server is reached when `PUBLIC_URL` does not say. */
+  ownUrl: () => string;
+  live?: LiveOptions;
+}
+
+/** Builds every service once, in the order in which they need each other. */
+export async function createContext(core: Core, options: ContextOptions) {
   const { config } = core;
-  const publicUrl = () => (config.PUBLIC_URL ?? ownUrl()).replace(/\/$/, '');
+  const publicUrl = () => (config.PUBLIC_URL ?? options.ownUrl()).replace(/\/$/, '');
   const isSecure = config.TLS_CERT !== undefined || config.PUBLIC_URL?.startsWith('https:') === true;
   const broker = createLateBroker();
   const changes = createAccessChanges();
@@ -59,7 +62,7 @@ export async function createContext(core: Core, ownUrl: () => string) {
   const devices = createDevices({ core, disconnect: broker.disconnect });
   const heads = createHeads({ core, headChanged: () => {} });
   const reservoirs = createReservoirs(core);
-  const live = createLive(core, changes);
+  const live = createLive(core, changes, options.live);
   const jobs = createJobs(core);
 
   const handlers: Partial<Handlers<EndpointName>> = {

@@ -12,6 +12,7 @@ import type { Core } from './core.ts';
 import { createHttp } from './http.ts';
 import { localRoutes } from './http/local-routes.ts';
 import { createMetrics } from './http/metrics.ts';
+import type { LiveOptions } from './live/create-live.ts';
 import { openCore } from './open-core.ts';
 import { createReadiness } from './readiness.ts';
 
@@ -22,6 +23,7 @@ export interface StartOptions {
   checkAnswers?: boolean;
   /** Where the built web app lies. */
   appFolder?: string;
+  live?: LiveOptions;
 }
 
 export interface RunningServer {
@@ -68,7 +70,7 @@ export async function startServer(config: Config, options: StartOptions = {}): P
   const opened = await openCore(config, options.clock ?? systemClock, log);
   const { core } = opened;
   let url = urlOf(config, config.PORT);
-  const context = await createContext(core, () => url);
+  const context = await createContext(core, { ownUrl: () => url, live: options.live });
   let isRunning = true;
 
   const metrics = createMetrics({ liveConnections: context.live.connections });

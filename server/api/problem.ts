@@ -31,10 +31,13 @@ function badInput(errors: FieldError[]): ProblemAnswer {
   return problemOfStatus(422, [...messages].join('; '), { errors });
 }
 
-/** What the body parser throws: it tells a status and whether its message may be shown. */
-function parserStatus(error: object): number | null {
+/** What the body parser and the file server throw: a status of the client's doing, and for a body the kind of fault. */
+function libraryProblem(error: Error): ProblemAnswer | null {
   if (!('expose' in error) || error.expose !== true || !('status' in error) || typeof error.status !== 'number') return null;
-  return error.status;
+  if (!('type' in error)) return problemOfStatus(404, 'There is no such file');
+  if (error.status === 413) return problemOfStatus(413, 'The body is larger than is taken here');
+  if (error.status === 415) return problemOfStatus(415, 'The character set or encoding of the body is not supported');
+  return badInput([{ path: '', message: 'The body cannot be read as JSON' }]);
 }
 
 /** The one table from what was broken to what is answered. Null: it is a fault of the server's own. */
@@ -50,9 +53,5 @@ export function problemOf(error: unknown): ProblemAnswer | null {
     const answer = problemOfStatus(429, message);
     return { ...answer, headers: { 'Retry-After': String(error.retryAfterSeconds) } };
   }
-  const status = parserStatus(error);
-  if (status === 413) return problemOfStatus(413, 'The body is larger than is taken here');
-  if (status === 415) return problemOfStatus(415, 'The character set or encoding of the body is not supported');
-  if (status !== null && status < 500) return badInput([{ path: '', message: 'The body cannot be read as JSON' }]);
-  return null;
+  return libraryProblem(error);
 }

@@ -21,6 +21,7 @@ function compressedSibling(folder: string, request: Request): { encoding: string
     // A path that is no URL has no file; the static handler answers it.
     return null;
   }
+  if (name.includes('\0')) return null;
   const file = path.join(folder, path.normalize(name));
   if (!file.startsWith(folder + path.sep) || path.extname(name) === '') return null;
   for (const sibling of siblings) {
@@ -65,7 +66,7 @@ export function staticApp(folder: string): Router {
   router.use(compressed, files);
   router.use((request, response, next) => {
     if (!isPage(request) || !existsSync(path.join(folder, 'index.html'))) return next();
-    request.url = '/';
+    request.url = '/index.html';
     compressed(request, response, () => files(request, response, next));
   });
   return router;
