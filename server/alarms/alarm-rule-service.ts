@@ -27,7 +27,8 @@ export interface AlarmRuleService {
 export function createAlarmRuleService({ writer, clock }: Core, modules: readonly AlarmRuleModule[]): AlarmRuleService {
   function contextOf(tx: Transaction, systemId: string): Omit<RuleContext, 'ruleFor'> {
     const nowMs = clock.nowMs();
-    const input = { systemId, nowMs, openFromMs: nowMs - OPEN_WINDOW_MS, serverBackMs: nowMs, modules };
+    const watch = { backMs: nowMs, heardAgainMs: () => nowMs };
+    const input = { systemId, nowMs, openFromMs: nowMs - OPEN_WINDOW_MS, watch, modules };
     const context = ruleContext(tx, input, { fromMs: nowMs, toMs: nowMs });
     if (context === null) throw new NotFoundError('There is no such system');
     return context;

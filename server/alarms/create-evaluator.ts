@@ -11,6 +11,8 @@ import { recordClosedWindows } from './record-closed-windows.ts';
 import type { StopPort } from './stop-port.ts';
 
 const TICK_MS = 1000;
+/** A mark that waited longer tells of a clock that jumped, not of a restart. */
+const LONGEST_WAIT_MS = 7 * 86_400_000;
 const CLOSED_JOB = 'alarms-closed-windows';
 
 export interface Evaluator {
@@ -50,13 +52,13 @@ export function createEvaluator(core: Core, port: StopPort, modules: readonly Al
 
   function evaluateIn(tx: Transaction, systemId: string) {
     const nowMs = clock.nowMs();
-    const serverBackMs = lease.hold(tx, nowMs);
-    if (serverBackMs === null) return null;
+    const watch = lease.hold(tx, nowMs);
+    if (watch === null) return null;
     const dirty = tx.first(query.selectFrom('dirtySystem').select('sinceMs').where('systemId', '=', systemId));
     if (dirty !== undefined) tx.run(query.deleteFrom('dirtySystem').where('systemId', '=', systemId));
     // Rows that waited while the server was down count as if they had been evaluated when they came.
-    const openFromMs = Math.min(nowMs, dirty?.sinceMs ?? nowMs) - OPEN_WINDOW_MS;
-    const result = evaluateSystem(tx, { systemId, nowMs, openFromMs, serverBackMs, modules }, port);
+    const openFromMs = Math.max(Math.min(nowMs, dirty?.sinceMs ?? nowMs), nowMs - LONGEST_WAIT_MS) - OPEN_WINDOW_MS;
+    const result = evaluateSystem(tx, { systemId, nowMs, openFromMs, watch, modules }, port);
     if (result.failures.length > 0) markDirty(tx, systemId, dirty?.sinceMs ?? nowMs);
     return result;
   }
@@ -108,11 +110,11 @@ export function createEvaluator(core: Core, port: StopPort, modules: readonly Al
   async function recordLate(): Promise<void> {
     const isMore = await writer.commit((tx) => {
       const nowMs = clock.nowMs();
-      const serverBackMs = lease.hold(tx, nowMs);
-      if (serverBackMs === null) return false;
+      const watch = lease.hold(tx, nowMs);
+      if (watch === null) return false;
       const job = tx.first(query.selectFrom('job').select('cursor').where('name', '=', CLOSED_JOB));
       const cursorSeq = Number(job?.cursor ?? 0);
-      const result = recordClosedWindows(tx, { cursorSeq, nowMs, serverBackMs, modules });
+      const result = recordClosedWindows(tx, { cursorSeq, nowMs, watch, modules });
       if (result.cursorSeq !== cursorSeq) saveCursor(tx, result.cursorSeq);
       return result.isMore;
     });

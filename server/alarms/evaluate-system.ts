@@ -7,6 +7,7 @@ import { columnsOf, flagsOf } from './alarm-row.ts';
 import { openAlarms, updateAlarm } from './alarm-store.ts';
 import { loadCarbonRecord, type CarbonRecord } from './carbon-record.ts';
 import { effectiveRules } from './effective-rule.ts';
+import type { Watch } from './evaluator-lease.ts';
 import type { AlarmRuleModule, Finding, RuleContext } from './finding.ts';
 import { loadPending } from './pending.ts';
 import { settleLimit } from './settle-limit.ts';
@@ -17,7 +18,7 @@ export interface EvaluationInput {
   nowMs: number;
   /** Windows that ended after this still count. */
   openFromMs: number;
-  serverBackMs: number;
+  watch: Watch;
   modules: readonly AlarmRuleModule[];
 }
 
@@ -40,7 +41,7 @@ export function ruleContext(
   input: EvaluationInput,
   ends: { fromMs: number; toMs: number },
 ): Omit<RuleContext, 'ruleFor'> | null {
-  const { systemId, nowMs, openFromMs, serverBackMs, modules } = input;
+  const { systemId, nowMs, openFromMs, watch, modules } = input;
   const system = tx.first(query.selectFrom('system').select('siteId').where('id', '=', systemId));
   if (system === undefined) return null;
   let carbon: CarbonRecord | undefined;
@@ -50,7 +51,7 @@ export function ruleContext(
     systemId,
     nowMs,
     openFromMs,
-    serverBackMs,
+    watch,
     carbon: () => (carbon ??= loadCarbonRecord(tx, systemId, ends.fromMs - longestWindowMs(modules), ends.toMs)),
   };
 }

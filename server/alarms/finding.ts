@@ -3,6 +3,7 @@ import type { LimitKind } from '#shared/domain/alarm-rules.ts';
 import type { Transaction } from '../db/writer.ts';
 import type { CarbonRecord } from './carbon-record.ts';
 import type { EffectiveRule } from './effective-rule.ts';
+import type { Watch } from './evaluator-lease.ts';
 import type { HeadAddress } from './stop-port.ts';
 
 /** What a rule measured for one target and one limit, whether past the limit or not. */
@@ -31,8 +32,8 @@ export interface RuleContext {
   nowMs: number;
   /** Windows that ended after this still count. */
   openFromMs: number;
-  /** Since when the server has been watching without a break. */
-  serverBackMs: number;
+  /** Since when the server has been watching without a break, and which pumps it has heard since. */
+  watch: Watch;
   ruleFor(target: string): EffectiveRule;
   /** The carbon given and planned, loaded once for all rules that ask. */
   carbon(): CarbonRecord;

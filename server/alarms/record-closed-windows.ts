@@ -9,6 +9,7 @@ import type { Transaction } from '../db/writer.ts';
 import { insertAlarm } from './alarm-store.ts';
 import { effectiveRules } from './effective-rule.ts';
 import { ruleContext } from './evaluate-system.ts';
+import type { Watch } from './evaluator-lease.ts';
 import type { AlarmRuleModule, ClosedFinding, LateDoses } from './finding.ts';
 
 const DAY_MS = 86_400_000;
@@ -28,7 +29,7 @@ export interface ClosedWindowsResult {
  */
 export function recordClosedWindows(
   tx: Transaction,
-  input: { cursorSeq: number; nowMs: number; serverBackMs: number; modules: readonly AlarmRuleModule[] },
+  input: { cursorSeq: number; nowMs: number; watch: Watch; modules: readonly AlarmRuleModule[] },
 ): ClosedWindowsResult {
   const late = tx.all(
     query
@@ -58,7 +59,7 @@ function recordSystem(
   tx: Transaction,
   systemId: string,
   rows: Row<'doseLedger'>[],
-  input: { nowMs: number; serverBackMs: number; modules: readonly AlarmRuleModule[] },
+  input: { nowMs: number; watch: Watch; modules: readonly AlarmRuleModule[] },
 ): void {
   const instantsMs = rows.map((row) => row.atMs);
   const late: LateDoses = { instantsMs, sources: new Set(rows.map((row) => `${row.sourceKind}:${row.sourceId}`)) };

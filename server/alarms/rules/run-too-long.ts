@@ -69,11 +69,11 @@ function overAtMs(tx: Transaction, run: RunRow): number | null {
 }
 
 function findingOf(context: RuleContext, run: RunRow, isOver: boolean): Finding | null {
-  const { tx, nowMs, serverBackMs } = context;
+  const { tx, nowMs, watch } = context;
   const bounds = runBounds(runIntent(tx, run));
   const begunArrivedMs = run.begunReceivedMs ?? run.begunMs;
   const excess = runExcess(
-    { begunArrivedMs, pumpBackMs: pumpBackMs(context, run), serverBackMs, ended: isOver, ml: run.ml },
+    { begunArrivedMs, pumpBackMs: pumpBackMs(context, run, begunArrivedMs), serverBackMs: watch.backMs, ended: isOver, ml: run.ml },
     bounds,
     nowMs,
   );
@@ -91,13 +91,18 @@ function findingOf(context: RuleContext, run: RunRow, isOver: boolean): Finding 
   };
 }
 
-/** Since when the pump has been connected; null while it is away, or has not been heard since the server came back. */
-function pumpBackMs({ tx, serverBackMs }: RuleContext, run: RunRow): number | null {
+/**
+ * Since when the pump has been there; null while it is away. After the server was away in between, since it was heard
+ * again: what it could not report meanwhile, such as the end of the run, comes right after its first words.
+ */
+function pumpBackMs({ tx, watch }: RuleContext, run: RunRow, begunArrivedMs: number): number | null {
   const state = tx.first(
     query.selectFrom('deviceState').select(['online', 'heardAtMs', 'changedAtMs']).where('deviceId', '=', run.deviceId),
   );
-  if (state === undefined) return run.receivedMs;
-  return state.online === 1 && state.heardAtMs >= serverBackMs ? state.changedAtMs : null;
+  if (state === undefined) return begunArrivedMs;
+  if (state.online === 0) return null;
+  if (begunArrivedMs >= watch.backMs) return state.changedAtMs;
+  return state.heardAtMs < watch.backMs ? null : Math.max(state.changedAtMs, watch.heardAgainMs(run.deviceId));
 }
 
 function newestSeq(tx: Transaction, run: RunRow): number {

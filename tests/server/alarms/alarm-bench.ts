@@ -34,6 +34,8 @@ export interface Bench {
   handDose(ml: number, atMs?: number): Promise<void>;
   /** Gives every planned portion of the stretch on time. */
   giveOnTime(fromMs: number, toMs: number, receivedMs?: number): Promise<void>;
+  /** What ingest leaves when the pump comes or goes. */
+  hear(online: boolean): Promise<void>;
   open(): Promise<AlarmRow[]>;
   all(): Promise<AlarmRow[]>;
   commit<Result>(unit: (tx: Transaction) => Result): Promise<Result>;
@@ -180,6 +182,22 @@ export async function openBench(startMs = Date.parse('2026-03-10T12:30:00Z')): P
         }
       }
       await writer.commit((tx) => rows.forEach((row) => writeRun(tx, row)));
+      await bench.alarms.settled();
+    },
+    async hear(online) {
+      const nowMs = clock.nowMs();
+      const known = await reader.selectFrom('deviceState').selectAll().where('deviceId', '=', pumpId).executeTakeFirst();
+      const isSame = known !== undefined && known.online === (online ? 1 : 0);
+      const state = { online: online ? 1 : 0, heardAtMs: nowMs, changedAtMs: isSame ? known.changedAtMs : nowMs, scheduleVersion: 1 };
+      await writer.commit((tx) => {
+        tx.run(
+          query
+            .insertInto('deviceState')
+            .values({ deviceId: pumpId, heads: '[]', clockOffsetMs: 0, clockUnset: 0, ...state })
+            .onConflict((conflict) => conflict.column('deviceId').doUpdateSet(state)),
+        );
+        markDirty(tx, systemId, nowMs);
+      });
       await bench.alarms.settled();
     },
     open: () => reader.selectFrom('alarm').selectAll().where('closedAtMs', 'is', null).orderBy('code').orderBy('limitKind').execute(),

@@ -1,7 +1,5 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { evidenceOf } from '../../../server/alarms/alarm-row.ts';
-import { markDirty } from '../../../server/changes/record-change.ts';
-import { query } from '../../../server/db/open.ts';
 import { type Bench, openBench } from './alarm-bench.ts';
 
 let bench: Bench;
@@ -13,34 +11,19 @@ beforeEach(async () => {
 
 afterEach(() => bench.close());
 
-async function hear(online: boolean): Promise<void> {
-  const nowMs = bench.clock.nowMs();
-  const state = { online: online ? 1 : 0, heardAtMs: nowMs, changedAtMs: nowMs, scheduleVersion: 1, clockOffsetMs: 0, clockUnset: 0 };
-  await bench.commit((tx) => {
-    tx.run(
-      query
-        .insertInto('deviceState')
-        .values({ deviceId: bench.pumpId, heads: '[]', ignoredFields: 0, ...state })
-        .onConflict((conflict) => conflict.column('deviceId').doUpdateSet(state)),
-    );
-    markDirty(tx, bench.systemId, nowMs);
-  });
-  await bench.alarms.settled();
-}
-
 describe('a device', () => {
   it('that is back within ten seconds calls nobody', async () => {
-    await hear(true);
-    await hear(false);
+    await bench.hear(true);
+    await bench.hear(false);
     await bench.pass(9_000);
-    await hear(true);
+    await bench.hear(true);
     await bench.pass(20_000);
     expect(await bench.all()).toEqual([]);
   });
 
   it('that stays away is an alarm after ten seconds, and stops nothing', async () => {
-    await hear(true);
-    await hear(false);
+    await bench.hear(true);
+    await bench.hear(false);
     await bench.pass(10_000);
     const [alarm] = await bench.open();
     expect(alarm).toMatchObject({
@@ -55,13 +38,13 @@ describe('a device', () => {
   });
 
   it('that is back for ten seconds is no alarm any more, once somebody saw it', async () => {
-    await hear(true);
-    await hear(false);
+    await bench.hear(true);
+    await bench.hear(false);
     await bench.pass(10_000);
     const [alarm] = await bench.open();
     if (alarm === undefined) throw new Error('no alarm');
     await bench.alarms.acknowledge(alarm.id, bench.userId);
-    await hear(true);
+    await bench.hear(true);
     await bench.pass(9_000);
     expect(await bench.open()).toMatchObject([{ active: 1 }]);
     await bench.pass(1_000);
@@ -74,8 +57,8 @@ describe('a device', () => {
   });
 
   it('whose delay runs while the server restarts still calls in time', async () => {
-    await hear(true);
-    await hear(false);
+    await bench.hear(true);
+    await bench.hear(false);
     await bench.pass(4_000);
     await bench.restart();
     await bench.pass(6_000);

@@ -24,19 +24,6 @@ const begin = (given: Partial<Parameters<Bench['run']>[0]> = {}) => {
   return bench.run({ ml: 0, cause: 'schedule', scheduleVersion: 1, dueMs: begunMs, begunMs, endedMs: null, ...given });
 };
 
-async function hear(online: boolean): Promise<void> {
-  const nowMs = bench.clock.nowMs();
-  const state = { online: online ? 1 : 0, heardAtMs: nowMs, changedAtMs: nowMs, scheduleVersion: 1, clockOffsetMs: 0, clockUnset: 0 };
-  await bench.commit((tx) =>
-    tx.run(
-      query
-        .insertInto('deviceState')
-        .values({ deviceId: bench.pumpId, heads: '[]', ignoredFields: 0, ...state })
-        .onConflict((conflict) => conflict.column('deviceId').doUpdateSet(state)),
-    ),
-  );
-}
-
 describe('a run', () => {
   it('that never ends stops the pumps one and a half times its expected time and 10 s after it was heard to begin', async () => {
     const run = await begin();
@@ -96,12 +83,12 @@ describe('a run', () => {
   });
 
   it('is timed from the return of its pump', async () => {
-    await hear(true);
+    await bench.hear(true);
     await begin();
-    await hear(false);
+    await bench.hear(false);
     await bench.pass(60_000, 5_000);
     expect(await tooLong()).toEqual([]);
-    await hear(true);
+    await bench.hear(true);
     await bench.pass(10_000);
     expect(await tooLong()).toEqual([]);
     await bench.pass(1_000);
@@ -109,16 +96,30 @@ describe('a run', () => {
   });
 
   it('is timed from the return of the server, and not before the pump is heard again', async () => {
-    await hear(true);
+    await bench.hear(true);
     await begin();
     await bench.alarms.close();
     bench.clock.advance(120_000);
     await bench.restart();
     await bench.pass(30_000, 5_000);
     expect(await tooLong()).toEqual([]);
-    await hear(true);
-    await bench.pass(11_000);
+    await bench.hear(true);
+    await bench.pass(10_000);
+    expect(await tooLong()).toEqual([]);
+    await bench.pass(1_000);
     expect(await tooLong()).toHaveLength(1);
+  });
+
+  it('whose end comes right after a pump is heard again is no alarm', async () => {
+    await bench.hear(true);
+    const run = await begin();
+    bench.clock.advance(40_000);
+    await bench.restart();
+    await bench.pass(25_000, 5_000);
+    await bench.hear(true);
+    await bench.run({ run, ml: 0.5 });
+    await bench.pass(20_000, 5_000);
+    expect(await tooLong()).toEqual([]);
   });
 
   it('is over when its head begins another one', async () => {
