@@ -1,7 +1,7 @@
 import { z } from 'zod';
 
-/** Times in our own JSON are UTC milliseconds since 1970. */
-const atMsSchema = z.number().int();
+/** Times in our own JSON are UTC milliseconds since 1970. A fraction is rounded: no dose is refused for its clock. */
+const atMsSchema = z.number().transform(Math.round);
 const headNumberSchema = z.number().int().min(1).max(16);
 const volumeMlSchema = z.number().min(0).max(100_000);
 

@@ -33,7 +33,7 @@ describe('the fence around a device', () => {
     const device = opened.device();
     const other = opened.device();
     const client = await opened.connect(device);
-    const closed = new Promise((resolve) => client.once('close', resolve));
+    const closed = new Promise<void>((resolve) => client.once('close', () => resolve()));
     client.publish(topicOf(device.username, other.username), '{}', { qos: 1 });
     await closed;
     expect(opened.received).toEqual([]);
@@ -72,7 +72,7 @@ describe('the fence around a device', () => {
     const device = opened.device();
     const second = await opened.connect({ ...device, clientId: `${device.username}:probes` });
     await second.publishAsync(`steadfall/${device.username}/senml`, '[]', { qos: 1 });
-    const closed = new Promise((resolve) => second.once('close', resolve));
+    const closed = new Promise<void>((resolve) => second.once('close', () => resolve()));
     second.publish(`steadfall/${device.username}/state`, '{"online":true}', { qos: 1 });
     await closed;
     expect(opened.received.map((message) => message.word)).toEqual(['senml']);
