@@ -1,11 +1,12 @@
 import { uuidv7 } from 'uuidv7';
 import { query } from '../../server/db/open.ts';
-import type { Database, Row } from '../../server/db/schema.ts';
+import type { Insertable } from 'kysely';
+import type { Database } from '../../server/db/schema.ts';
 import type { Core } from '../../server/core.ts';
 import type { Role } from '#shared/domain/role.ts';
 
 /** Writes a row as it is, for what a test takes for given. */
-export async function insertRow<Table extends keyof Database>(core: Core, table: Table, row: Row<Table>): Promise<void> {
+export async function insertRow<Table extends keyof Database>(core: Core, table: Table, row: Insertable<Database[Table]>): Promise<void> {
   // The writer runs any compiled statement; the row's type was checked by the signature.
   await core.writer.commit((tx) => tx.run(query.insertInto(table).values(row as never)));
 }

@@ -1,0 +1,164 @@
+import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { uuidv7 } from 'uuidv7';
+import { rigEndpoints } from '#shared/contract/rig.ts';
+import { assignmentAt } from '../../../server/rig/assignment-at.ts';
+import { NotFoundError } from '../../../server/errors.ts';
+import { manualClock, openTestCore, type TestCore } from '../../helpers/core.ts';
+import { insertRow } from '../../helpers/rows.ts';
+import { type RigBench, setUpRig } from './rig-bench.ts';
+
+const clock = manualClock();
+const startMs = Date.parse('2026-03-01T12:00:00Z');
+let opened: TestCore;
+let rig: RigBench;
+
+beforeEach(async () => {
+  clock.set(startMs);
+  opened = await openTestCore(clock);
+  rig = await setUpRig(opened.core);
+});
+
+afterEach(() => opened.close());
+
+const use = () => ({
+  deviceId: rig.pumpId,
+  head: 1,
+  kind: 'carbon' as const,
+  productId: rig.productId,
+  reservoirId: null,
+  mlPerSecond: 1.1,
+  smallestMl: 0.2,
+});
+type HeadChange = Partial<Omit<ReturnType<typeof use>, 'reservoirId'>> & { id?: string; reservoirId?: string | null };
+const create = (change: HeadChange = {}) => rig.heads.create({ ...rig, body: { ...use(), ...change } });
+
+/** What a run of the head takes that began at a time. */
+async function inForce(atMs: number) {
+  const statement = assignmentAt(rig.pumpId, 1, atMs).compile();
+  const { rows } = await opened.core.reader.executeQuery(statement);
+  expect(rows.length).toBeLessThan(2);
+  return rows[0];
+}
+
+describe('a head', () => {
+  it('is put to use on the system of its pump, without a schedule and not stopped', async () => {
+    const { value } = await create();
+    expect(value).toMatchObject({ ...use(), systemId: rig.systemId, deviceName: 'pump', schedule: null, stop: null });
+    expect(await rig.heads.list(rig.systemId)).toEqual([value]);
+    expect(await rig.heads.list(rig.neighbour.systemId)).toEqual([]);
+  });
+
+  it('is made once when the request is repeated, even after it was changed', async () => {
+    const id = uuidv7();
+    await create({ id });
+    clock.advance(1000);
+    await rig.heads.update({ ...rig, headId: id, body: { smallestMl: 0.5 } });
+    expect(await create({ id })).toMatchObject({ isRepeated: true, value: { id, smallestMl: 0.5 } });
+    await expect(create({ id, mlPerSecond: 2 })).rejects.toMatchObject({ rule: 'id-taken' });
+  });
+
+  it('cannot be put to use twice', async () => {
+    await create();
+    await expect(create()).rejects.toMatchObject({ rule: 'head-in-use' });
+    await expect(create({ head: 2 })).resolves.toMatchObject({ isRepeated: false });
+  });
+
+  it.each<[string, () => HeadChange, string]>([
+    ['a probe', () => ({ deviceId: rig.probeId }), 'deviceId'],
+    ["another site's pump", () => ({ deviceId: rig.foreign.pumpId }), 'deviceId'],
+    ["another system's pump", () => ({ deviceId: rig.neighbour.pumpId }), 'deviceId'],
+    ["another site's product", () => ({ productId: rig.foreign.productId }), 'productId'],
+    ["another site's reservoir", () => ({ reservoirId: rig.foreign.reservoirId }), 'reservoirId'],
+    ["another system's reservoir", () => ({ reservoirId: rig.neighbour.reservoirId }), 'reservoirId'],
+  ])('is refused with %s', async (_, change, path) => {
+    await expect(create(change())).rejects.toMatchObject({ errors: [{ path }] });
+    expect(await rig.heads.list(rig.systemId)).toEqual([]);
+  });
+});
+
+describe('changing what a head is used for', () => {
+  it('lets a run take what was in force when it began', async () => {
+    const { value } = await create();
+    clock.advance(3_600_000);
+    await rig.heads.update({ ...rig, headId: value.id, body: { kind: 'other', productId: null, mlPerSecond: 2 } });
+    expect(await inForce(startMs - 1)).toBeUndefined();
+    expect(await inForce(startMs)).toMatchObject({ kind: 'carbon', productId: rig.productId, mlPerSecond: 1.1 });
+    expect(await inForce(startMs + 3_599_999)).toMatchObject({ kind: 'carbon' });
+    expect(await inForce(startMs + 3_600_000)).toMatchObject({ kind: 'other', productId: null, mlPerSecond: 2, headId: value.id });
+  });
+
+  it('leaves what was not sent', async () => {
+    const { value } = await create();
+    const body = rigEndpoints.updateHead.body.parse({ smallestMl: 0.4 });
+    const changed = await rig.heads.update({ ...rig, headId: value.id, body });
+    expect(changed).toEqual({ ...value, smallestMl: 0.4 });
+  });
+
+  it('keeps one assignment in force through changes in the same millisecond and a clock set back', async () => {
+    const { value } = await create();
+    await rig.heads.update({ ...rig, headId: value.id, body: { smallestMl: 0.3 } });
+    clock.advance(-60_000);
+    await rig.heads.update({ ...rig, headId: value.id, body: { smallestMl: 0.4 } });
+    expect(await inForce(startMs)).toMatchObject({ smallestMl: 0.4 });
+    expect(await rig.heads.list(rig.systemId)).toHaveLength(1);
+    const rows = await opened.core.reader.selectFrom('headAssignment').select(['fromMs', 'toMs']).execute();
+    expect(rows.every((row) => row.toMs === null || row.toMs >= row.fromMs)).toBe(true);
+  });
+
+  it('writes nothing when nothing changes', async () => {
+    const { value } = await create();
+    const count = async () => (await opened.core.reader.selectFrom('audit').select('seq').execute()).length;
+    const before = await count();
+    await rig.heads.update({ ...rig, headId: value.id, body: { kind: 'carbon', smallestMl: 0.2 } });
+    expect(await count()).toBe(before);
+  });
+
+  it('publishes a schedule with the new delivery rate where the head has a dose', async () => {
+    const { value } = await create();
+    await insertRow(opened.core, 'headSchedule', {
+      id: uuidv7(),
+      siteId: rig.siteId,
+      headId: value.id,
+      mlPerDay: 2,
+      slotMl: 0.5,
+      slotsUtcMin: '[480,600,720,840]',
+      overrideReason: null,
+      fromMs: startMs,
+      toMs: null,
+      actorId: rig.userId,
+    });
+    const changed = await rig.heads.update({ ...rig, headId: value.id, body: { mlPerSecond: 0.8 } });
+    expect(changed.schedule).toEqual({ mlPerDay: 2, slotMl: 0.5, slotsUtcMin: [480, 600, 720, 840], since: '2026-03-01T12:00:00.000Z' });
+    const { body } = await opened.core.reader.selectFrom('scheduleVersion').select('body').executeTakeFirstOrThrow();
+    expect(JSON.parse(body)).toMatchObject({ heads: [{ head: 1, mlPerSecond: 0.8, slotMl: 0.5 }] });
+  });
+
+  it("is refused for foreign references and another site's head", async () => {
+    const { value } = await create();
+    const update = (body: object, siteId = rig.siteId) => rig.heads.update({ siteId, userId: rig.userId, headId: value.id, body });
+    await expect(update({ productId: rig.foreign.productId })).rejects.toMatchObject({ errors: [{ path: 'productId' }] });
+    await expect(update({ reservoirId: rig.neighbour.reservoirId })).rejects.toMatchObject({ errors: [{ path: 'reservoirId' }] });
+    await expect(update({ smallestMl: 1 }, rig.foreign.siteId)).rejects.toThrow(NotFoundError);
+    expect(await inForce(startMs)).toMatchObject({ smallestMl: 0.2, productId: rig.productId });
+  });
+
+  it('shows the stop that stands', async () => {
+    const { value } = await create();
+    await insertRow(opened.core, 'headStop', {
+      id: uuidv7(),
+      siteId: rig.siteId,
+      systemId: rig.systemId,
+      deviceId: rig.pumpId,
+      head: 1,
+      cause: 'person',
+      alarmId: null,
+      stoppedAtMs: startMs,
+      actorKind: 'user',
+      actorId: rig.userId,
+      resumedAtMs: null,
+      resumedBy: null,
+    });
+    const [head] = await rig.heads.list(rig.systemId);
+    expect(head).toMatchObject({ id: value.id, stop: { cause: 'person', alarmId: null, at: '2026-03-01T12:00:00.000Z' } });
+  });
+});
