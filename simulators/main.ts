@@ -119,7 +119,11 @@ function run({ options, scenarioName, scenarioArgument }: Exclude<ReturnType<typ
   );
   let pump: PumpDevice | null = null;
   const start = () => {
-    if (options.kind === 'probe') return createProbeDevice({ ...shared, channels: options.channels, water });
+    if (options.kind === 'probe') {
+      const probe = createProbeDevice({ ...shared, channels: options.channels, water });
+      probe.start();
+      return probe;
+    }
     const heads = Array.from({ length: options.heads }, (_, index) => index + 1);
     pump = createPumpDevice({ ...shared, spec: { heads, defaultMlPerSecond: 1.1 } });
     return pump;

@@ -9,6 +9,8 @@ export interface MqttDeviceOptions {
   url: string;
   deviceId: string;
   password: string;
+  /** For a broker on this machine with a certificate that nobody signed. */
+  trustAnyCertificate?: boolean;
   outbox: Outbox;
   /** For the jitter of reconnecting: a thousand devices must not come back in one instant. */
   random: Random;
@@ -29,8 +31,8 @@ export interface MqttDevice {
   tellState(): void;
   /** Cuts the connection without a goodbye, as a lost network does, and stays away for a while. */
   goOffline(forMs: number): void;
-  /** Resolves when everything that is in the outbox now has been acknowledged. */
-  drained(): Promise<void>;
+  /** Resolves when at most so many messages are left in the outbox. */
+  waitUntilLeft(atMost: number): Promise<void>;
   /** Resolves at the next connection, at once when there is one. */
   connected(): Promise<void>;
   /** Says goodbye and ends; what is in the outbox stays there. */
@@ -61,7 +63,7 @@ export function createMqttDevice(options: MqttDeviceOptions): MqttDevice {
   const acknowledged = new Set<number>();
   let oldestNumber = 0;
   let retryTimer: NodeJS.Timeout | undefined;
-  let waitingForDrain: { number: number; resolve: () => void }[] = [];
+  let waitingForRoom: { atMost: number; resolve: () => void }[] = [];
   let waitingForConnection: (() => void)[] = [];
 
   function open(): void {
@@ -75,6 +77,7 @@ export function createMqttDevice(options: MqttDeviceOptions): MqttDevice {
       connectTimeout: 10_000,
       reconnectPeriod: 0,
       resubscribe: false,
+      rejectUnauthorized: options.trustAnyCertificate !== true,
       will: { topic: stateTopic, payload: Buffer.from(JSON.stringify({ online: false })), qos: 1, retain: true },
     });
     client = mine;
@@ -159,8 +162,8 @@ export function createMqttDevice(options: MqttDeviceOptions): MqttDevice {
       oldestNumber += 1;
       underWay -= 1;
     }
-    const done = waitingForDrain.filter((one) => one.number <= oldestNumber);
-    waitingForDrain = waitingForDrain.filter((one) => one.number > oldestNumber);
+    const done = waitingForRoom.filter((one) => outbox.length <= one.atMost);
+    waitingForRoom = waitingForRoom.filter((one) => !done.includes(one));
     for (const one of done) one.resolve();
     pump();
   }
@@ -187,11 +190,10 @@ export function createMqttDevice(options: MqttDeviceOptions): MqttDevice {
       retryIn(forMs);
       mine?.stream.destroy();
     },
-    drained: () =>
+    waitUntilLeft: (atMost) =>
       new Promise((resolve) => {
-        const number = oldestNumber + outbox.length;
-        if (number === oldestNumber) resolve();
-        else waitingForDrain.push({ number, resolve });
+        if (outbox.length <= atMost) resolve();
+        else waitingForRoom.push({ atMost, resolve });
       }),
     connected: () => (isUp ? Promise.resolve() : new Promise((resolve) => waitingForConnection.push(resolve))),
     async close() {

@@ -16,6 +16,7 @@ export interface ProbeDeviceOptions {
   url: string;
   deviceId: string;
   password: string;
+  trustAnyCertificate?: boolean;
   folder: string;
   clock: WorldClock;
   faults: Faults;
@@ -27,11 +28,19 @@ export interface ProbeDeviceOptions {
 
 export interface ProbeDevice {
   link: MqttDevice;
+  /** Goes on from what the probe kept, and samples from the next full ten seconds after `fromMs` on (the present). */
+  start(fromMs?: number): void;
   close(): Promise<void>;
   cut(): void;
 }
 
 export const SAMPLE_EVERY_MS = 10_000;
+
+/** What a probe set kept; undefined for one that never ran. */
+export function readProbeState(folder: string): ProbeState | undefined {
+  const kept = probeStateFile(folder).load();
+  return kept === undefined ? undefined : keptSchema.parse(kept);
+}
 
 const keptSchema = z.custom<ProbeState>((value) => z.object({ randomState: z.number(), channels: z.object() }).safeParse(value).success);
 
@@ -41,8 +50,7 @@ export const probeStateFile = (folder: string) => stateFile(folder, 'probe.json'
 export function createProbeDevice(options: ProbeDeviceOptions): ProbeDevice {
   const { clock, faults, water, deviceId } = options;
   const file = probeStateFile(options.folder);
-  const kept = file.load();
-  let state = kept === undefined ? newProbe(options.seed) : keptSchema.parse(kept);
+  let state = newProbe(options.seed);
   let isUp = false;
   let timer: NodeJS.Timeout | undefined;
   const bootMs = Date.now();
@@ -51,6 +59,7 @@ export function createProbeDevice(options: ProbeDeviceOptions): ProbeDevice {
     url: options.url,
     deviceId,
     password: options.password,
+    trustAnyCertificate: options.trustAnyCertificate,
     outbox: fileOutbox(options.folder, 'outbox.jsonl'),
     random: randomFrom(seedFor(options.seed, `reconnect ${bootMs}`)),
     describe: () => ({ online: true, atMs: faults.isClockUnset ? Date.now() - bootMs : Date.now() }),
@@ -61,7 +70,7 @@ export function createProbeDevice(options: ProbeDeviceOptions): ProbeDevice {
     },
   });
 
-  let dueMs = Math.ceil(clock.nowMs() / SAMPLE_EVERY_MS) * SAMPLE_EVERY_MS;
+  let dueMs = 0;
   function sampleWhatIsDue(): void {
     for (; dueMs <= clock.nowMs(); dueMs += SAMPLE_EVERY_MS) sample(dueMs);
     timer = setTimeout(sampleWhatIsDue, Math.max(1, clock.wallMsFor(dueMs - clock.nowMs())));
@@ -78,10 +87,13 @@ export function createProbeDevice(options: ProbeDeviceOptions): ProbeDevice {
     else if (isUp) link.send('senml', undatedPack(deviceId, step.values));
   }
 
-  sampleWhatIsDue();
-
   return {
     link,
+    start(fromMs = clock.nowMs()) {
+      state = readProbeState(options.folder) ?? state;
+      dueMs = Math.ceil((fromMs + 1) / SAMPLE_EVERY_MS) * SAMPLE_EVERY_MS;
+      sampleWhatIsDue();
+    },
     close() {
       clearTimeout(timer);
       return link.close();

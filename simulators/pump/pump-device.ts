@@ -17,6 +17,7 @@ export interface PumpDeviceOptions {
   url: string;
   deviceId: string;
   password: string;
+  trustAnyCertificate?: boolean;
   /** Where the pump keeps its memory and what it has not yet sent. */
   folder: string;
   clock: WorldClock;
@@ -24,7 +25,7 @@ export interface PumpDeviceOptions {
   seed: number;
   log(line: string): void;
   /** What really left a head since the last time, mL. */
-  onDelivered?(head: number, ml: number): void;
+  onDelivered?(head: number, ml: number, atMs: number): void;
 }
 
 export interface PumpDevice {
@@ -41,15 +42,21 @@ export interface PumpDevice {
 const keptSchema = z.custom<PumpState>((value) => z.object({ origin: z.string(), heads: z.array(z.unknown()) }).safeParse(value).success);
 
 export const pumpStateFile = (folder: string) => stateFile(folder, 'pump.json');
+export const pumpOutbox = (folder: string) => fileOutbox(folder, 'outbox.jsonl');
+
+/** What a pump kept; undefined for one that never ran. */
+export function readPumpState(folder: string): PumpState | undefined {
+  const kept = pumpStateFile(folder).load();
+  return kept === undefined ? undefined : keptSchema.parse(kept);
+}
 
 /** A pump as a process has it: the step function, driven by a clock, a memory on disk and a connection. */
 export function createPumpDevice(options: PumpDeviceOptions): PumpDevice {
   const { spec, clock, faults, log } = options;
   const file = pumpStateFile(options.folder);
-  const kept = file.load();
   const bootMs = clock.nowMs();
   // A pump without a memory takes its first start for its origin, so that neither its run ids nor its counter repeat earlier ones.
-  let state = kept === undefined ? newPump(spec, bootMs.toString(36), Math.floor(bootMs / 1_000)) : keptSchema.parse(kept);
+  let state = readPumpState(options.folder) ?? newPump(spec, bootMs.toString(36), Math.floor(bootMs / 1_000));
   const trueMl = new Map(spec.heads.map((head) => [head, trueMlPerCountedMl(options.seed, head)]));
   let timer: NodeJS.Timeout | undefined;
   let isOver = false;
@@ -66,7 +73,8 @@ export function createPumpDevice(options: PumpDeviceOptions): PumpDevice {
     url: options.url,
     deviceId: options.deviceId,
     password: options.password,
-    outbox: fileOutbox(options.folder, 'outbox.jsonl'),
+    trustAnyCertificate: options.trustAnyCertificate,
+    outbox: pumpOutbox(options.folder),
     random: randomFrom(seedFor(options.seed, `reconnect ${bootMs}`)),
     describe: () => describePump(state, stampMs()),
     onMessage: hear,
@@ -95,7 +103,7 @@ export function createPumpDevice(options: PumpDeviceOptions): PumpDevice {
     if (changed(before, state)) file.save(state);
     for (const [index, head] of state.heads.entries()) {
       const ml = (head.odometerMl - (before.heads[index]?.odometerMl ?? 0)) * (trueMl.get(head.head) ?? 1);
-      if (ml > 0) options.onDelivered?.(head.head, ml);
+      if (ml > 0) options.onDelivered?.(head.head, ml, state.time.nowMs);
     }
     for (const message of step.messages) {
       link.send(message.word, message.payload);

@@ -30,7 +30,7 @@ export interface PumpStep {
   wakeInMs: number;
 }
 
-const LONGEST_WAIT_MS = 60_000;
+const LONGEST_WAIT_MS = 3_600_000;
 /** More than the slots of two days, which is as far back as a moved clock can make a slot seem new. */
 const HANDLED_SLOTS_KEPT = 200;
 
