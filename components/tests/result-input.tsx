@@ -1,0 +1,66 @@
+import { useState } from 'react';
+import type { Test, TestQuantity } from '#shared/contract/records.ts';
+import { unitsFor } from '#shared/units/nutrient-units.ts';
+import { Button } from '../ui/button.tsx';
+import { Checkbox } from '../ui/checkbox.tsx';
+import { Select } from '../ui/select.tsx';
+import { Stepper } from '../ui/stepper.tsx';
+import { lastValue, type ResultDraft, stepFor } from './test-form.ts';
+import { quantityNames, resultWords } from './result-words.ts';
+
+/** One result: value with its stepper; unit and "below detection" one press away. */
+export function ResultInput({
+  quantity,
+  draft,
+  onChange,
+  tests,
+  error,
+}: {
+  quantity: TestQuantity;
+  draft: ResultDraft;
+  onChange: (draft: ResultDraft) => void;
+  tests: readonly Test[];
+  error: string | null;
+}) {
+  const [more, setMore] = useState(draft.below);
+  const { step, decimals } = stepFor(draft.unit);
+  const last = tests.find((test) => test.quantity === quantity);
+  const name = quantityNames[quantity];
+  return (
+    <div style={{ display: 'flex', flexDirection: 'column', gap: 8 }}>
+      <Stepper
+        label={name}
+        unit={draft.unit}
+        text={draft.text}
+        onChange={(text) => onChange({ ...draft, text })}
+        step={step}
+        decimals={decimals}
+        startAt={lastValue(quantity, draft.unit, tests) ?? 0}
+        hint={last === undefined ? undefined : `Last: ${resultWords(last)}`}
+        error={error}
+      />
+      {more ? (
+        <>
+          <Select
+            label={`${name}: unit`}
+            value={draft.unit}
+            onChange={(unit) => onChange({ ...draft, unit })}
+            options={unitsFor(quantity).map((unit) => ({ value: unit, label: unit }))}
+          />
+          <Checkbox
+            label={`${name}: below detection`}
+            hint="The kit showed nothing: the result is under the value above."
+            checked={draft.below}
+            onChange={(below) => onChange({ ...draft, below })}
+          />
+        </>
+      ) : (
+        <div>
+          <Button kind="quiet" name={`${name}: unit or below detection`} onPress={() => setMore(true)}>
+            Unit or below detection
+          </Button>
+        </div>
+      )}
+    </div>
+  );
+}

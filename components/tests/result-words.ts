@@ -1,0 +1,48 @@
+import type { Test, TestQuantity } from '#shared/contract/records.ts';
+import { formatNumber, decimalsFor } from '../../lib/format/number.ts';
+import { defaultBands, placeInBand, type Nutrient } from '../../lib/format/nutrient.ts';
+
+export const quantityNames: Record<TestQuantity, string> = {
+  nitrate: 'Nitrate',
+  phosphate: 'Phosphate',
+  alkalinity: 'Alkalinity',
+  ammonia: 'Ammonia',
+  nitrite: 'Nitrite',
+};
+
+export function isNutrient(quantity: TestQuantity): quantity is Nutrient {
+  return quantity === 'nitrate' || quantity === 'phosphate';
+}
+
+/** As it was written down: `under 0.02 mg/L PO4`, never more digits than were given. */
+export function resultWords(test: Pick<Test, 'value' | 'unit' | 'below'>): string {
+  const figure = Number.isInteger(test.value)
+    ? String(test.value)
+    : formatNumber(test.value, Math.max(decimalsFor(test.value), decimalsOf(test.value)));
+  return `${test.below ? 'under ' : ''}${figure} ${test.unit}`;
+}
+
+function decimalsOf(value: number): number {
+  return String(value).split('.')[1]?.length ?? 0;
+}
+
+/** Where a nutrient lies; null for what has no band here. */
+export function placeWords(test: Pick<Test, 'quantity' | 'canonicalMgPerL' | 'below'>): string | null {
+  if (!isNutrient(test.quantity)) return null;
+  return placeInBand(test.canonicalMgPerL, test.below, defaultBands[test.quantity]);
+}
+
+type Tested = Pick<Test, 'quantity' | 'canonicalMgPerL' | 'below'>;
+
+/** What follows from the pair just written down, in one sentence. */
+export function consequenceSentence(tests: readonly Tested[]): string {
+  const nutrients = tests.filter((test) => isNutrient(test.quantity));
+  const parts = nutrients.map((test) => `${quantityNames[test.quantity].toLowerCase()} ${placeWords(test) ?? ''}`);
+  if (parts.length === 0) return 'Written down.';
+  const allIn = nutrients.every((test) => placeWords(test) === 'in band');
+  const anyBelow = nutrients.some((test) => placeWords(test) === 'below');
+  const said = `Written down: ${parts.join(', ')}.`;
+  if (anyBelow) return `${said} One below band: do not raise the dose.`;
+  if (allIn) return nutrients.length === 2 ? 'Written down: both in band, nothing to change.' : `${said} Test the other one too.`;
+  return nutrients.length === 2 ? said : `${said} Test the other one too.`;
+}
