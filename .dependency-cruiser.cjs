@@ -27,7 +27,7 @@ module.exports = {
     forbid('server-knows-no-client', '^server/', `^(simulators|tests|scripts)/|${client}`),
     forbid(
       'broker-is-assembled-in-one-place',
-      { path: '^server/', pathNot: '^server/(context|start-server|ingest/external-broker)\\.ts$' },
+      { path: '^server/', pathNot: '^server/(context|start-broker|ingest/external-broker)\\.ts$' },
       { path: '^broker/', dependencyTypesNot: ['type-only'] },
     ),
     forbid('broker-knows-no-tables', '^broker/', `^(server|simulators|tests|scripts)/|${client}`),

@@ -1,9 +1,14 @@
 import type { EndpointName } from '#shared/contract/endpoints.ts';
 import { createAccessChanges } from './access/access-changes.ts';
+import { createAlarms } from './alarms/create-alarms.ts';
+import { alarmHandlers } from './api/alarms.ts';
 import { authHandlers } from './api/auth.ts';
+import { controlHandlers } from './api/control.ts';
 import { deviceHandlers } from './api/devices.ts';
+import { doseHandlers } from './api/doses.ts';
 import { liveHandlers } from './api/live.ts';
 import { productHandlers } from './api/products.ts';
+import { recordHandlers } from './api/records.ts';
 import { createRefreshCookie } from './api/refresh-cookie.ts';
 import { rigHandlers } from './api/rig.ts';
 import type { Handlers } from './api/route.ts';
@@ -14,15 +19,20 @@ import { readJwtSecret } from './auth/jwt-secret.ts';
 import { makeWelcomeCode } from './auth/welcome-code.ts';
 import type { Core } from './core.ts';
 import { createDevices } from './devices/create-devices.ts';
+import { createDoses } from './doses/create-doses.ts';
+import { createIngest } from './ingest/create-ingest.ts';
 import { createJobs } from './jobs/create-jobs.ts';
 import { createLateBroker } from './late-broker.ts';
 import { createLive, type LiveOptions } from './live/create-live.ts';
 import { createNotify } from './notify/create-notify.ts';
 import { createSmtpMailer } from './notify/mailer.ts';
+import { createOrders } from './orders/create-orders.ts';
 import { createProducts } from './products/create-products.ts';
 import { createHeads } from './rig/create-heads.ts';
 import { createReservoirs } from './rig/create-reservoirs.ts';
+import { createSchedules } from './schedules/create-schedules.ts';
 import { createSites } from './sites/create-sites.ts';
+import { createStops } from './stops/create-stops.ts';
 import { createSystems } from './systems/create-systems.ts';
 
 export type Context = Awaited<ReturnType<typeof createContext>>;
@@ -60,8 +70,14 @@ export async function createContext(core: Core, options: ContextOptions) {
   const systems = createSystems(core);
   const products = createProducts(core);
   const devices = createDevices({ core, disconnect: broker.disconnect });
-  const heads = createHeads({ core, headChanged: () => {} });
+  const schedules = createSchedules(core, broker);
+  const orders = createOrders(core, broker);
+  const stops = createStops(core, orders, schedules);
+  const heads = createHeads(core, schedules);
   const reservoirs = createReservoirs(core);
+  const doses = createDoses(core);
+  const alarms = createAlarms(core, stops);
+  const ingest = createIngest(core, { ...orders.hooks, onRun: () => {} });
   const live = createLive(core, changes, options.live);
   const jobs = createJobs(core);
 
@@ -72,8 +88,35 @@ export async function createContext(core: Core, options: ContextOptions) {
     ...productHandlers(products),
     ...deviceHandlers(devices),
     ...rigHandlers(heads, reservoirs),
+    ...recordHandlers(core),
+    ...doseHandlers(doses),
+    ...controlHandlers({ schedules, stops, orders, listHeads: heads.list }),
+    ...alarmHandlers(alarms),
     ...liveHandlers(live),
   };
 
-  return { core, publicUrl, welcomeCode, broker, auth, devices, notify, live, jobs, handlers };
+  return {
+    core,
+    publicUrl,
+    welcomeCode,
+    broker,
+    auth,
+    devices,
+    ingest,
+    orders,
+    schedules,
+    alarms,
+    live,
+    jobs,
+    handlers,
+    /** Ends what works in the background, the newest first. The live stream has ended before. */
+    async close() {
+      await jobs.close();
+      await alarms.close();
+      stops.close();
+      await orders.close();
+      await schedules.close();
+      await notify.close();
+    },
+  };
 }
