@@ -23,6 +23,13 @@ export interface PlannedVolume {
   largestSlotMl(fromMs: number, toMs: number): number;
   /** False when no schedule with an enabled carbon head that has slots was in force at any time in the window. */
   isScheduled(fromMs: number, toMs: number): boolean;
+  /** The dose planned per day as steps: what it is at `fromMs`, and each later change before `toMs`. */
+  dailySteps(fromMs: number, toMs: number): DailyStep[];
+}
+
+export interface DailyStep {
+  fromMs: number;
+  mlPerDay: number;
 }
 
 interface UseRow {
@@ -124,7 +131,25 @@ function assemble(uses: UseRow[], versions: VersionRow[]): PlannedVolume {
     });
   }
 
+  /** What the schedules in force at a moment plan per day, mL. */
+  function mlPerDayAt(atMs: number): number {
+    const heads = deviceIds.flatMap((deviceId) => {
+      const inForce = histories.get(deviceId)?.findLast((schedule) => schedule.fromMs <= atMs);
+      return inForce?.heads.filter((head) => head.enabled && useAt(deviceId, head.head, atMs) !== undefined) ?? [];
+    });
+    return heads.reduce((sum, head) => sum + head.slotMl * head.slotsUtcMin.length, 0);
+  }
+
+  function dailySteps(fromMs: number, toMs: number): DailyStep[] {
+    const published = versions.map((version) => version.fromMs);
+    const assigned = uses.flatMap((use) => [use.fromMs, use.toMs ?? fromMs]);
+    const changesMs = [...published, ...assigned].filter((atMs) => atMs > fromMs && atMs < toMs).sort((one, other) => one - other);
+    const steps = [fromMs, ...new Set(changesMs)].map((atMs) => ({ fromMs: atMs, mlPerDay: mlPerDayAt(atMs) }));
+    return steps.filter((step, index) => index === 0 || step.mlPerDay !== steps[index - 1]?.mlPerDay);
+  }
+
   return {
+    dailySteps,
     plannedSlots: planned,
     scheduledSlots: all,
     plannedMl: (fromMs, toMs) => planned(fromMs, toMs).reduce((sum, slot) => sum + slot.ml, 0),

@@ -179,14 +179,14 @@ describe('a stop', () => {
       { head: 7, state: 'dosing', odometerMl: null, odometerEpoch: null },
       { head: 8, state: 'idle', odometerMl: null, odometerEpoch: null },
     ]);
-    const times = { heardAtMs: 0, changedAtMs: 0, scheduleVersion: null, clockOffsetMs: null, clockUnset: 0, ignoredFields: 0 };
+    const times = { heardAtMs: 0, changedAtMs: 0, scheduleVersion: null, clockOffsetMs: null, clockUnset: 0 };
     await scene.insert('deviceState', { deviceId: scene.device.id, online: 1, ...times, heads });
     expect((await stop()).orders.map((order) => order.head)).toEqual([1, 7]);
   });
 
   it('by an interlock takes every head that nobody registered, and the head concerned', async () => {
     const heads = JSON.stringify([{ head: 8, state: 'idle', odometerMl: null, odometerEpoch: null }]);
-    const times = { heardAtMs: 0, changedAtMs: 0, scheduleVersion: null, clockOffsetMs: null, clockUnset: 0, ignoredFields: 0 };
+    const times = { heardAtMs: 0, changedAtMs: 0, scheduleVersion: null, clockOffsetMs: null, clockUnset: 0 };
     await scene.insert('deviceState', { deviceId: scene.device.id, online: 1, ...times, heads });
     const alarmId = uuidv7();
     await interlock(alarmId, { deviceId: scene.device.id, head: 3 });
