@@ -7,15 +7,18 @@ import { plannedVolumeIn, type SystemSlot } from '../doses/planned-volume.ts';
 import { runSourceId } from '../doses/run-source-id.ts';
 import { carbonCeilingMlPerDay } from './carbon-ceiling.ts';
 
+const runColumns = ['deviceId', 'run', 'head', 'cause', 'dueMs', 'begunMs'] as const;
+const ledgerColumns = ['seq', 'sourceKind', 'sourceId', 'atMs', 'deltaMl'] as const;
+
 type LedgerRow = Row<'doseLedger'>;
-type RunRow = Row<'run'>;
+type RunFacts = Pick<Row<'run'>, (typeof runColumns)[number]>;
 
 /** One ledger entry of carbon at the time at which it counts. */
 export interface CarbonEntry extends VolumeAt {
   seq: number;
   sourceKind: LedgerRow['sourceKind'];
   sourceId: string;
-  run: RunRow | null;
+  run: RunFacts | null;
   /** The run began while its head was to be kept stopped. */
   onStoppedHead: boolean;
 }
@@ -75,7 +78,7 @@ function loadEntries(tx: Transaction, systemId: string, fromMs: number, toMs: nu
   const ledger = tx.all(
     query
       .selectFrom('doseLedger')
-      .selectAll()
+      .select(ledgerColumns)
       .where('systemId', '=', systemId)
       .where('kind', '=', 'carbon')
       .where('atMs', '>', fromMs)
@@ -101,14 +104,14 @@ function loadEntries(tx: Transaction, systemId: string, fromMs: number, toMs: nu
   });
 }
 
-function loadRuns(tx: Transaction, systemId: string, fromMs: number, toMs: number): Map<string, RunRow> {
+function loadRuns(tx: Transaction, systemId: string, fromMs: number, toMs: number): Map<string, RunFacts> {
   const rows = tx.all(
-    query.selectFrom('run').selectAll().where('systemId', '=', systemId).where('begunMs', '>', fromMs).where('begunMs', '<=', toMs),
+    query.selectFrom('run').select(runColumns).where('systemId', '=', systemId).where('begunMs', '>', fromMs).where('begunMs', '<=', toMs),
   );
   return new Map(rows.map((row) => [runSourceId(row.deviceId, row.run), row]));
 }
 
-function keptStopped(stop: Row<'headStop'>, run: RunRow): boolean {
+function keptStopped(stop: Row<'headStop'>, run: RunFacts): boolean {
   return (
     stop.deviceId === run.deviceId &&
     stop.head === run.head &&

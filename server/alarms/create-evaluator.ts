@@ -95,7 +95,26 @@ export function createEvaluator(core: Core, port: StopPort, modules: readonly Al
     const rows = await reader
       .selectFrom('alarmPending')
       .select('systemId')
-      .union(reader.selectFrom('run').select('systemId').where('endedMs', 'is', null))
+      .union(
+        reader
+          .selectFrom('run')
+          .select('systemId')
+          .where('endedMs', 'is', null)
+          // A run whose end got lost is over when its head began another one; time changes nothing about it.
+          .where((where) =>
+            where.not(
+              where.exists(
+                where
+                  .selectFrom('run as later')
+                  .select('later.run')
+                  .whereRef('later.systemId', '=', 'run.systemId')
+                  .whereRef('later.begunMs', '>', 'run.begunMs')
+                  .whereRef('later.deviceId', '=', 'run.deviceId')
+                  .whereRef('later.head', '=', 'run.head'),
+              ),
+            ),
+          ),
+      )
       .union(
         reader
           .selectFrom('alarm')

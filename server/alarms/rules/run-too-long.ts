@@ -9,20 +9,19 @@ import { runIntent } from '../run-intent.ts';
 
 type RunRow = Row<'run'>;
 
+/** No run that has ended lasted longer, so that a look back need not read a whole history. */
+const LONGEST_RUN_MS = 86_400_000;
+
 /** A run has not ended when it should have, or has given far more than it was to give. */
 export const runTooLong: AlarmRuleModule = {
   code: 'run-too-long',
   windowMs: OPEN_WINDOW_MS,
   evaluate(context) {
     const { tx, systemId, openFromMs } = context;
-    const runs = tx.all(
-      query
-        .selectFrom('run')
-        .selectAll()
-        .where('systemId', '=', systemId)
-        .where((where) => where.or([where('endedMs', 'is', null), where('endedMs', '>', openFromMs)]))
-        .orderBy('begunMs'),
-    );
+    const ofSystem = query.selectFrom('run').selectAll().where('systemId', '=', systemId);
+    const open = tx.all(ofSystem.where('endedMs', 'is', null));
+    const ended = tx.all(ofSystem.where('begunMs', '>', openFromMs - LONGEST_RUN_MS).where('endedMs', '>', openFromMs));
+    const runs = [...open, ...ended].sort((a, b) => a.begunMs - b.begunMs);
     const byTarget = new Map<string, Finding>();
     for (const run of runs) {
       const overMs = overAtMs(tx, run);
@@ -39,7 +38,8 @@ export const runTooLong: AlarmRuleModule = {
         .selectFrom('run')
         .selectAll()
         .where('systemId', '=', context.systemId)
-        .where('endedMs', '>=', Math.min(...late.instantsMs))
+        .where('begunMs', '>', Math.min(...late.instantsMs) - LONGEST_RUN_MS)
+        .where('begunMs', '<=', Math.max(...late.instantsMs))
         .where('endedMs', '<=', context.nowMs - OPEN_WINDOW_MS),
     );
     return runs
