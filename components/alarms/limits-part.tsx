@@ -28,8 +28,8 @@ export function LimitsPart({ systemId, role }: { systemId: string; role: Role })
         alarm and resumes. The pump keeps ceilings of its own besides.
       </Text>
       {rules.data.map((rule) => (
-        <section key={ruleKey(rule)} className="limit-row" aria-label={alarmTitles[rule.code]}>
-          <div className="limit-row-head">
+        <section key={ruleKey(rule)} className="item" aria-label={alarmTitles[rule.code]}>
+          <div className="item-head">
             <Heading level={2} variant="label">
               {alarmTitles[rule.code]}
             </Heading>
