@@ -20,8 +20,12 @@ export default defineConfig({
       {
         define: { __DEV__: 'true' },
         resolve: {
-          alias: { 'react-native': here('./node_modules/react-native-web') },
-          extensions: ['.web.tsx', '.web.ts', '.tsx', '.ts', '.mjs', '.js', '.json'],
+          alias: {
+            'react-native': here('./node_modules/react-native-web'),
+            // Its main file is CommonJS, whose own requires know nothing of the alias above.
+            'react-native-svg': here('./node_modules/react-native-svg/lib/module/index.js'),
+          },
+          extensions: ['.web.tsx', '.web.ts', '.web.js', '.tsx', '.ts', '.mjs', '.js', '.json'],
         },
         test: {
           name: 'client',
