@@ -3,17 +3,17 @@ import type { Reader } from '../db/open.ts';
 import { orderOutcome } from './order-outcome.ts';
 import type { OrderRow } from './insert-order.ts';
 
-/** Tells those who wait for an order that its row may have changed. */
+/** Tells those who wait for an order that rows of orders may have changed. */
 export interface OrderNews {
-  tell(orderIds: readonly string[]): void;
+  tell(): void;
   /** @returns the unsubscriber. */
-  listen(listener: (orderIds: readonly string[]) => void): () => void;
+  listen(listener: () => void): () => void;
 }
 
 export function createOrderNews(): OrderNews {
-  const listeners = new Set<(orderIds: readonly string[]) => void>();
+  const listeners = new Set<() => void>();
   return {
-    tell: (orderIds) => listeners.forEach((listener) => listener(orderIds)),
+    tell: () => listeners.forEach((listener) => listener()),
     listen(listener) {
       listeners.add(listener);
       return () => listeners.delete(listener);
@@ -38,15 +38,13 @@ export async function awaitOutcomes({ reader, news, isConnected, orderIds, withi
   let wake: () => void = () => undefined;
   let hasNews = false;
   let isOver = false;
-  const stir = () => wake();
-  const unsubscribe = news.listen((ids) => {
-    if (!ids.some((id) => orderIds.includes(id))) return;
+  const unsubscribe = news.listen(() => {
     hasNews = true;
-    stir();
+    wake();
   });
   const timer = setTimeout(() => {
     isOver = true;
-    stir();
+    wake();
   }, withinMs);
 
   try {

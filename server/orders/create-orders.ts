@@ -49,7 +49,7 @@ export function createOrders(core: Core, publisher: DevicePublisher): Orders {
   const news = createOrderNews();
   const listeners = new Set<SettledListener>();
   const returned = new Set<string>();
-  let touched: string[] = [];
+  let isTouched = false;
 
   const loop = createWorkLoop({
     name: 'Sending orders',
@@ -59,25 +59,27 @@ export function createOrders(core: Core, publisher: DevicePublisher): Orders {
     work: () => dispatchOrders({ core, publisher, takeReturned: (deviceId) => returned.delete(deviceId), onSettled: news.tell }),
   });
 
+  /** Inside a unit: rows of orders change with its commit. Should it be rolled back, those who look find nothing new. */
+  function touch(): void {
+    isTouched = true;
+    loop.request();
+  }
+
   const unsubscribe = core.writer.onCommitted(() => {
-    if (touched.length === 0) return;
-    const orderIds = touched;
-    touched = [];
-    news.tell(orderIds);
+    if (!isTouched) return;
+    isTouched = false;
+    news.tell();
   });
 
   return {
     hooks: {
       onReceipt(tx, device, receipt, receivedMs) {
         const order = receiveReceipt(tx, device.id, receipt, receivedMs);
-        touched.push(receipt.order);
-        loop.request();
+        touch();
         if (order !== null) listeners.forEach((listener) => listener(tx, order, receivedMs));
       },
       onState(tx, device, state, receivedMs) {
-        const { settledIds, hasToSend } = receiveState(tx, device, state, receivedMs);
-        touched.push(...settledIds);
-        if (hasToSend) loop.request();
+        if (receiveState(tx, device, state, receivedMs)) touch();
       },
     },
     onSettled(listener) {
@@ -89,7 +91,7 @@ export function createOrders(core: Core, publisher: DevicePublisher): Orders {
       void loop.run();
     },
     isConnected: (deviceId) => publisher.isConnected(deviceId),
-    request: () => loop.request(),
+    request: touch,
     dispatch: () => loop.run(),
     outcomes: (orderIds) =>
       awaitOutcomes({

@@ -11,8 +11,8 @@ export interface DispatchOptions {
   publisher: DevicePublisher;
   /** True once for a device that has just come back: its stops are sent whatever their turn. */
   takeReturned(deviceId: string): boolean;
-  /** Called with the ids of orders that got an outcome without the pump. */
-  onSettled(orderIds: string[]): void;
+  /** Called when an order got an outcome without the pump. */
+  onSettled(): void;
 }
 
 const STOP_EVERY_MS = 5_000;
@@ -53,7 +53,7 @@ export async function dispatchOrders({ core, publisher, takeReturned, onSettled 
 
   async function settle(order: OrderRow, state: 'expired' | 'refused', why: string | null): Promise<void> {
     await writer.commit((tx) => settleOrder(tx, order.id, { state, why, atMs: nowMs }));
-    onSettled([order.id]);
+    onSettled();
   }
 
   const countAttempt = (order: OrderRow) =>

@@ -5,23 +5,14 @@ import type { Transaction } from '../db/writer.ts';
 import { orderStop, settleOrder, waitingOrders } from './insert-order.ts';
 import { openStop } from './open-stop.ts';
 
-/** Ids of orders that a report settled, and whether any order is to be sent because of it. */
-export interface StateEffect {
-  settledIds: string[];
-  hasToSend: boolean;
-}
-
 /**
  * Holds what a pump says of its heads against what they are to be. A head that says `stopped` has answered its stop order.
  * One that is to be stopped and says anything else is told again, whatever it answered before: a stop is a state.
+ *
+ * @returns true when an order was settled or made by this.
  */
-export function receiveState(
-  tx: Transaction,
-  device: { id: string; siteId: string },
-  state: StatePayload,
-  receivedMs: number,
-): StateEffect {
-  const effect: StateEffect = { settledIds: [], hasToSend: false };
+export function receiveState(tx: Transaction, device: { id: string; siteId: string }, state: StatePayload, receivedMs: number): boolean {
+  let hasChanged = false;
   for (const { head, state: reported } of state.heads ?? []) {
     const waiting = waitingOrders(tx, device.id, head);
     if (reported === 'stopped') {
@@ -30,16 +21,16 @@ export function receiveState(
       for (const order of waiting) {
         if (order.do !== 'stop') continue;
         settleOrder(tx, order.id, { state: 'done', why: null, atMs: receivedMs });
-        effect.settledIds.push(order.id);
+        hasChanged = true;
       }
       continue;
     }
     const stop = openStop(tx, device.id, head);
     if (stop === undefined || waiting.some((order) => order.do === 'resume')) continue;
     orderStop(tx, { siteId: device.siteId, deviceId: device.id, head, causeAlarmId: stop.alarmId, actor: systemActor, nowMs: receivedMs });
-    effect.hasToSend = true;
+    hasChanged = true;
   }
-  return effect;
+  return hasChanged;
 }
 
 function isResumeUnderWay(tx: Transaction, deviceId: string, head: number, nowMs: number): boolean {
