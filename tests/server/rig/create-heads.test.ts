@@ -20,7 +20,7 @@ beforeEach(async () => {
 
 afterEach(() => opened.close());
 
-const use = () => ({
+const carbonUse = () => ({
   deviceId: rig.pumpId,
   head: 1,
   kind: 'carbon' as const,
@@ -29,8 +29,8 @@ const use = () => ({
   mlPerSecond: 1.1,
   smallestMl: 0.2,
 });
-type HeadChange = Partial<Omit<ReturnType<typeof use>, 'reservoirId'>> & { id?: string; reservoirId?: string | null };
-const create = (change: HeadChange = {}) => rig.heads.create({ ...rig, body: { ...use(), ...change } });
+type HeadChange = Partial<Omit<ReturnType<typeof carbonUse>, 'reservoirId'>> & { id?: string; reservoirId?: string | null };
+const create = (change: HeadChange = {}) => rig.heads.create({ ...rig, body: { ...carbonUse(), ...change } });
 
 /** What a run of the head takes that began at a time. */
 async function inForce(atMs: number) {
@@ -43,7 +43,7 @@ async function inForce(atMs: number) {
 describe('a head', () => {
   it('is put to use on the system of its pump, without a schedule and not stopped', async () => {
     const { value } = await create();
-    expect(value).toMatchObject({ ...use(), systemId: rig.systemId, deviceName: 'pump', schedule: null, stop: null });
+    expect(value).toMatchObject({ ...carbonUse(), systemId: rig.systemId, deviceName: 'pump', schedule: null, stop: null });
     expect(await rig.heads.list(rig.systemId)).toEqual([value]);
     expect(await rig.heads.list(rig.neighbour.systemId)).toEqual([]);
   });
