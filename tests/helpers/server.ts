@@ -12,6 +12,7 @@ import { addUser } from '../../server/auth/users.ts';
 import { type Clock, systemClock } from '../../server/clock.ts';
 import { readConfig } from '../../server/config.ts';
 import { query } from '../../server/db/open.ts';
+import type { Transaction } from '../../server/db/writer.ts';
 import { addSite } from '../../server/sites/add-site.ts';
 import { type RunningServer, startServer, type StartOptions } from '../../server/start-server.ts';
 
@@ -24,11 +25,13 @@ export interface CallInput<Name extends EndpointName> {
   body?: BodyInputOf<Table[Name]>;
 }
 
-/** Some input that is wrong on purpose. */
-interface AnyInput {
+/** Input that the types do not check: wrong on purpose, or made for any endpoint. */
+export interface AnyInput {
   params?: Record<string, string>;
   query?: Record<string, string>;
   body?: unknown;
+  /** Sent as multipart in place of a body. */
+  form?: FormData;
 }
 
 export interface Api {
@@ -54,6 +57,8 @@ export interface TestServer extends RunningServer {
   api(token?: string): Api;
   /** Makes an account with an open session, without the cost of hashing a password: such a person cannot sign in. */
   person(name?: string): Promise<TestPerson>;
+  /** Opens a second session for a person and gives its id. */
+  anotherSession(person: TestPerson): Promise<string>;
   site(owner: TestPerson, name?: string): Promise<string>;
   join(person: TestPerson, siteId: string, role: Role): Promise<void>;
   /** A new person with this role in the site. */
@@ -94,6 +99,7 @@ export function apiOf(url: string, token?: string): Api {
         ...(input.body === undefined ? {} : { 'content-type': 'application/json' }),
       },
       ...(input.body === undefined ? {} : { body: JSON.stringify(input.body) }),
+      ...(input.form === undefined ? {} : { body: input.form }),
     });
   }
 
@@ -124,14 +130,17 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
   const { core, url } = running;
   const tokens = createAccessTokens(config.JWT_SECRET ?? jwtSecret, clock);
 
-  async function person(name = 'Somebody'): Promise<TestPerson> {
+  function insertSession(tx: Transaction, userId: string): string {
     const nowMs = clock.nowMs();
-    const sessionId = uuidv7();
-    const user = await core.writer.commit((tx) => {
-      const added = addUser(tx, { email: `${sessionId}@test.example`, name, passwordHash: 'no password', nowMs });
-      const session = { id: sessionId, userId: added.id, generation: 0, rotatedAtMs: nowMs, createdAtMs: nowMs };
-      tx.run(query.insertInto('session').values({ ...session, expiresAtMs: nowMs + 86_400_000, revokedAtMs: null, userAgent: 'test' }));
-      return added;
+    const session = { id: uuidv7(), userId, generation: 0, rotatedAtMs: nowMs, createdAtMs: nowMs };
+    tx.run(query.insertInto('session').values({ ...session, expiresAtMs: nowMs + 30 * 86_400_000, revokedAtMs: null, userAgent: 'test' }));
+    return session.id;
+  }
+
+  async function person(name = 'Somebody'): Promise<TestPerson> {
+    const { user, sessionId } = await core.writer.commit((tx) => {
+      const added = addUser(tx, { email: `${uuidv7()}@test.example`, name, passwordHash: 'no password', nowMs: clock.nowMs() });
+      return { user: added, sessionId: insertSession(tx, added.id) };
     });
     const token = tokens.sign({ userId: user.id, sessionId });
     return { id: user.id, email: user.email, sessionId, token, api: apiOf(url, token) };
@@ -153,6 +162,7 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
     folder,
     api: (token) => apiOf(url, token),
     person,
+    anotherSession: (somebody) => core.writer.commit((tx) => insertSession(tx, somebody.id)),
     site,
     join,
     async member(siteId, role) {
