@@ -1,11 +1,14 @@
 import type { Core } from './core.ts';
 import type { ReadinessChecks } from './http/local-routes.ts';
 
+export interface ReadinessStates {
+  broker: () => boolean;
+  demo: () => boolean;
+  running: () => boolean;
+}
+
 /** Ready is whoever can keep what comes in: the database takes a write, the broker is up, and the demo has its history. */
-export function createReadiness(
-  core: Core,
-  states: { broker: () => boolean; demo: () => boolean; running: () => boolean },
-): ReadinessChecks {
+export function createReadiness(core: Core, states: ReadinessStates): ReadinessChecks {
   async function isWritable(): Promise<boolean> {
     const upsert = `insert into job (name, leaseOwner, leaseUntilMs, fencingToken, cursor) values ('readiness', null, ?, 0, null)
       on conflict (name) do update set leaseUntilMs = excluded.leaseUntilMs`;

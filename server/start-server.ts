@@ -10,13 +10,14 @@ import { type Clock, systemClock } from './clock.ts';
 import type { Config } from './config.ts';
 import { createContext, type Context } from './context.ts';
 import type { Core } from './core.ts';
+import { type Demo, startDemo } from './demo/start-demo.ts';
 import { createHttp } from './http.ts';
 import { localRoutes } from './http/local-routes.ts';
 import { createMetrics } from './http/metrics.ts';
 import { watchSilence } from './ingest/watch-silence.ts';
 import type { LiveOptions } from './live/create-live.ts';
 import { openCore } from './open-core.ts';
-import { createReadiness } from './readiness.ts';
+import { createReadiness, type ReadinessStates } from './readiness.ts';
 import { startBroker } from './start-broker.ts';
 
 export interface StartOptions {
@@ -27,14 +28,21 @@ export interface StartOptions {
   /** Where the built web app lies. */
   appFolder?: string;
   live?: LiveOptions;
+  /** Told one line at a time how a long start goes. */
+  onProgress?: (line: string) => void;
 }
 
 export interface RunningServer {
   url: string;
   httpPort: number;
   mqttPort: number;
+  mqttUrl: string;
   core: Core;
   context: Context;
+  /** Null without the demo. */
+  demo: Promise<Demo> | null;
+  /** Resolves when everything is up, the demo's history included. */
+  ready: Promise<void>;
   /** Takes nothing new, commits what came in, says goodbye to devices and browsers, closes the database. */
   close(): Promise<void>;
 }
@@ -62,18 +70,24 @@ function closeHttp(server: Server): Promise<void> {
   });
 }
 
-/** Where a person on this machine reaches a server that listens on `host`. */
-function urlOf(config: Config, port: number): string {
-  const scheme = config.TLS_CERT === undefined ? 'http' : 'https';
-  const host = config.HOST === '0.0.0.0' || config.HOST === '::' ? 'localhost' : config.HOST;
-  return `${scheme}://${host.includes(':') ? `[${host}]` : host}:${port}`;
+/** Where somebody on this machine reaches a server that listens on `HOST`. */
+function addressOf({ HOST }: Config, port: number): string {
+  const host = HOST === '0.0.0.0' || HOST === '::' ? 'localhost' : HOST;
+  return `${host.includes(':') ? `[${host}]` : host}:${port}`;
 }
 
-function routesOf(context: Context, options: StartOptions, isRunning: () => boolean): RequestHandler[] {
+function urlOf(config: Config, port: number): string {
+  return `${config.TLS_CERT === undefined ? 'http' : 'https'}://${addressOf(config, port)}`;
+}
+
+function mqttUrlOf(config: Config, port: number): string {
+  return `${config.TLS_CERT === undefined ? 'mqtt' : 'mqtts'}://${addressOf(config, port)}`;
+}
+
+function routesOf(context: Context, options: StartOptions, states: ReadinessStates): RequestHandler[] {
   const metrics = createMetrics({ liveConnections: context.live.connections });
-  const readiness = createReadiness(context.core, { broker: context.broker.isUp, demo: () => true, running: isRunning });
   return [
-    localRoutes(readiness, metrics.registry),
+    localRoutes(createReadiness(context.core, states), metrics.registry),
     openApiRoute(context.publicUrl),
     mountEndpoints(context.handlers, {
       reader: context.core.reader,
@@ -122,7 +136,9 @@ async function start(config: Config, options: StartOptions, closers: ReturnType<
   closers.add(silence.close);
 
   let isRunning = true;
-  const http = createHttp({ config, log, appFolder: options.appFolder ?? builtApp, routes: routesOf(context, options, () => isRunning) });
+  let isDemoReady = () => !config.DEMO;
+  const states = { broker: context.broker.isUp, demo: () => isDemoReady(), running: () => isRunning };
+  const http = createHttp({ config, log, appFolder: options.appFolder ?? builtApp, routes: routesOf(context, options, states) });
   context.live.attach(http);
   const httpPort = await listen(http, config.PORT, config.HOST);
   closers.add(async () => {
@@ -132,5 +148,30 @@ async function start(config: Config, options: StartOptions, closers: ReturnType<
     await closing;
   });
   url = urlOf(config, httpPort);
-  return { url, httpPort, mqttPort: broker.port, core, context, close: closers.closeAll };
+  const mqttUrl = config.MQTT_URL ?? mqttUrlOf(config, broker.port);
+
+  let demo: Promise<Demo> | null = null;
+  if (config.DEMO) {
+    const { publishDue } = context.schedules;
+    demo = startDemo({ core, mqttUrl, publishSchedules: publishDue, print: options.onProgress ?? (() => {}) });
+    closers.add(() => endDemo(demo, log));
+  }
+  const ready =
+    demo === null
+      ? Promise.resolve()
+      : demo.then((started) => {
+          isDemoReady = started.isReady;
+          return started.ready;
+        });
+  // Whoever waits for it hears of a failure too.
+  ready.catch((error: unknown) => log.error({ err: error }, 'the demo could not be started'));
+  return { url, httpPort, mqttPort: broker.port, mqttUrl, core, context, demo, ready, close: closers.closeAll };
+}
+
+async function endDemo(demo: Promise<Demo> | null, log: Logger): Promise<void> {
+  try {
+    await (await demo)?.close();
+  } catch (error) {
+    log.warn({ err: error }, 'the demo had not started');
+  }
 }
