@@ -28,7 +28,7 @@ export interface Reservoirs {
 export function createReservoirs(core: Core): Reservoirs {
   return {
     async list(systemId) {
-      const reservoirs = reservoirRows().where('reservoir.systemId', '=', systemId);
+      const reservoirs = reservoirRows(systemId);
       const rows = await readRows(core.reader, reservoirs.orderBy('reservoir.createdAtMs', 'desc').orderBy('reservoir.id', 'desc'));
       return rows.map((row) => reservoirOf(row, core.clock.nowMs()));
     },
@@ -56,7 +56,7 @@ export function createReservoirs(core: Core): Reservoirs {
           });
           recordChange(tx, { systemId, type: 'plan', atMs: nowMs, data: { reason: 'reservoir' } });
         }
-        const row = tx.first(reservoirRows().where('reservoir.id', '=', id));
+        const row = tx.first(reservoirRows(systemId).where('reservoir.id', '=', id));
         if (row === undefined) throw new Error(`Reservoir ${id} was claimed and is not there`);
         return { value: reservoirOf(row, nowMs), isRepeated };
       });

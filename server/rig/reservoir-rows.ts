@@ -24,20 +24,22 @@ const lastRefills = query
   .where('place', '=', 1)
   .select(['ranked.reservoirId', 'ranked.atMs', 'ranked.ml', 'ranked.productId']);
 
-/** What the heads of each reservoir gave since its last refill, while they drew from it. */
-const drawn = query
-  .selectFrom(lastRefills.as('since'))
-  .innerJoin('headAssignment as use', 'use.reservoirId', 'since.reservoirId')
-  .innerJoin('doseLedger as ledger', (join) =>
-    join
-      .onRef('ledger.systemId', '=', 'use.systemId')
-      .onRef('ledger.headId', '=', 'use.headId')
-      .onRef('ledger.atMs', '>=', 'since.atMs')
-      .onRef('ledger.atMs', '>=', 'use.fromMs')
-      .on((on) => on.or([on('use.toMs', 'is', null), on('ledger.atMs', '<', on.ref('use.toMs'))])),
-  )
-  .groupBy('since.reservoirId')
-  .select((select) => ['since.reservoirId', select.fn.sum<number>('ledger.deltaMl').as('ml')]);
+/** What the heads of each reservoir of a system gave since its last refill, while they drew from it. */
+const drawnIn = (systemId: string) =>
+  query
+    .selectFrom(lastRefills.as('since'))
+    .innerJoin('headAssignment as use', 'use.reservoirId', 'since.reservoirId')
+    .innerJoin('doseLedger as ledger', (join) =>
+      join
+        .onRef('ledger.systemId', '=', 'use.systemId')
+        .onRef('ledger.headId', '=', 'use.headId')
+        .onRef('ledger.atMs', '>=', 'since.atMs')
+        .onRef('ledger.atMs', '>=', 'use.fromMs')
+        .on((on) => on.or([on('use.toMs', 'is', null), on('ledger.atMs', '<', on.ref('use.toMs'))])),
+    )
+    .where('use.systemId', '=', systemId)
+    .groupBy('since.reservoirId')
+    .select((select) => ['since.reservoirId', select.fn.sum<number>('ledger.deltaMl').as('ml')]);
 
 /** The daily dose set for the heads that draw from each reservoir now. */
 const planned = query
@@ -48,12 +50,13 @@ const planned = query
   .groupBy('use.reservoirId')
   .select((select) => ['use.reservoirId', select.fn.sum<number>('schedule.mlPerDay').as('mlPerDay')]);
 
-export function reservoirRows() {
+export function reservoirRows(systemId: string) {
   return query
     .selectFrom('reservoir')
     .leftJoin(lastRefills.as('last'), 'last.reservoirId', 'reservoir.id')
-    .leftJoin(drawn.as('drawn'), 'drawn.reservoirId', 'reservoir.id')
+    .leftJoin(drawnIn(systemId).as('drawn'), 'drawn.reservoirId', 'reservoir.id')
     .leftJoin(planned.as('planned'), 'planned.reservoirId', 'reservoir.id')
+    .where('reservoir.systemId', '=', systemId)
     .select([
       'reservoir.id',
       'reservoir.siteId',
