@@ -1,3 +1,4 @@
+/* global __dirname -- a CommonJS file */
 const http = require('node:http');
 const { getDefaultConfig } = require('expo/metro-config');
 

@@ -1,20 +1,159 @@
+import { useMemo, useState, type ReactNode } from 'react';
+import { isAtLeast } from '#shared/domain/role.ts';
+import type { System } from '#shared/contract/systems.ts';
+import { useBreakpoint } from '../../hooks/use-breakpoint.ts';
+import { useTests } from '../../hooks/use-records.ts';
 import { useSystem } from '../../hooks/use-systems.ts';
 import { useSeries } from '../../hooks/use-telemetry.ts';
+import { useTheme } from '../../hooks/use-theme.ts';
 import { useTitle } from '../../hooks/use-title.ts';
+import { ChartStack } from '../charts/chart-stack.tsx';
+import { ContextStrip } from '../charts/context-strip.tsx';
+import { readLanes } from '../charts/nearest.ts';
+import { presets } from '../charts/presets.ts';
+import { spanOf } from '../charts/time-axis.ts';
+import { Button } from '../ui/button.tsx';
 import { Heading } from '../ui/heading.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Screen } from '../ui/screen.tsx';
+import { SegmentedControl } from '../ui/segmented-control.tsx';
+import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
+import { VisuallyHidden } from '../ui/visually-hidden.tsx';
+import './overlay.css';
+import { OverlayReadout } from './overlay-readout.tsx';
+import { groupProbes } from './probe-lanes.ts';
+import { rangeSentence } from './range-sentence.ts';
+import { useOverlayLanes } from './use-overlay-lanes.ts';
+import { useOverlayView } from './use-overlay-view.ts';
 
-/** Tests, doses, events and probes over one time axis. */
-export function OverlayScreen({ systemId }: { systemId: string }) {
+/** What the sheet of a test is asked to do: a new one at a time, or one that is there. */
+export type TestSheetTarget = { readonly atMs: number } | { readonly testId: string };
+
+export interface OverlayScreenProps {
+  systemId: string;
+  /** Draws the sheet in which a test is written down or corrected; given by the route, since tests are another feature. */
+  renderTestSheet?: (target: TestSheetTarget, onClose: () => void) => ReactNode;
+}
+
+/** Tests, doses and probes over one time axis. */
+export function OverlayScreen(props: OverlayScreenProps) {
+  const system = useSystem(props.systemId);
+  useTitle('Overlay', system.data?.name);
+  if (system.data === undefined) {
+    return (
+      <Screen wide>
+        <Heading level={1}>Overlay</Heading>
+        {system.isError ? (
+          <Notice error={system.error} onRetry={() => void system.refetch()} />
+        ) : (
+          <Skeleton lines={8} name="Loading the overlay" />
+        )}
+      </Screen>
+    );
+  }
+  return <Overlay {...props} system={system.data} />;
+}
+
+const laneHeightPx = { phone: 96, wide: 128 };
+
+function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { system: System }) {
+  const zone = system.timeZone;
+  const isPhone = useBreakpoint() === 'phone';
+  const { tokens } = useTheme();
+  const tests = useTests(systemId);
   const series = useSeries(systemId);
-  useTitle('Overlay', useSystem(systemId).data?.name);
+  const [unfolded, setUnfolded] = useState<ReadonlyMap<string, boolean>>(new Map());
+  const [sheet, setSheet] = useState<TestSheetTarget | null>(null);
+
+  const earliestTestMs = useMemo(() => Math.min(...(tests.data ?? []).map((test) => Date.parse(test.at)), Infinity), [tests.data]);
+  const { view, settledRange, limits, preset, nowMs, onView, choosePreset } = useOverlayView(earliestTestMs);
+
+  const groups = useMemo(() => groupProbes(series.data ?? []), [series.data]);
+  // On a phone one probe stands open, the others are a press away.
+  const isOpen = (id: string, folded: boolean, i: number) => unfolded.get(id) ?? (isPhone ? i === 0 : !folded);
+  const open = groups.filter((group, i) => isOpen(group.id, group.folded, i));
+  const openKey = open.map((group) => group.id).join('|');
+  // eslint-disable-next-line react-hooks/exhaustive-deps -- `open` is made anew on each render; what it holds follows these two
+  const openGroups = useMemo(() => open, [openKey, groups]);
+  const { nutrients, dose, probes, error } = useOverlayLanes(systemId, settledRange, zone, tests.data, openGroups);
+  const lanes = useMemo(() => [...nutrients, dose, ...probes], [nutrients, dose, probes]);
+
+  const { crosshairMs } = view;
+  const nearMs = spanOf(view.range) / 100;
+  const readings = useMemo(() => (crosshairMs === null ? [] : readLanes(lanes, crosshairMs, nearMs)), [lanes, crosshairMs, nearMs]);
+  const whole = { fromMs: limits.earliestMs, toMs: nowMs };
+  const mayLog = renderTestSheet !== undefined && isAtLeast(system.role, 'sitter');
+
+  // On a phone the tab says where one is, and the room is for the lanes.
+  const title = <Heading level={1}>Overlay</Heading>;
+  const readout =
+    crosshairMs === null ? null : (
+      <OverlayReadout
+        crosshairMs={crosshairMs}
+        readings={readings}
+        zone={zone}
+        onEditTest={mayLog ? (testId) => setSheet({ testId }) : undefined}
+      />
+    );
   return (
-    <Screen wide>
-      <Heading level={1}>Overlay</Heading>
-      {series.isError ? <Notice error={series.error} onRetry={() => void series.refetch()} /> : null}
-      <Text soft>{series.data === undefined ? ' ' : `${series.data.length} measured series.`}</Text>
+    <Screen wide footer={readout}>
+      {isPhone ? <VisuallyHidden>{title}</VisuallyHidden> : title}
+      <div className="overlay-head">
+        <Text variant={isPhone ? 'sentence' : 'sentenceWide'}>
+          {rangeSentence(preset?.words ?? null, settledRange, zone, nutrients, dose)}
+        </Text>
+        {mayLog && <Button onPress={() => setSheet({ atMs: crosshairMs ?? nowMs })}>Write down a test</Button>}
+      </div>
+      {[tests.error, series.error, error]
+        .filter((one) => one !== null)
+        .slice(0, 1)
+        .map((one) => (
+          <Notice key="error" error={one} onRetry={() => void Promise.all([tests.refetch(), series.refetch()])} />
+        ))}
+      <div className="overlay-presets">
+        <SegmentedControl
+          name="Time shown"
+          value={preset?.id ?? ''}
+          onChange={(id) => presets.filter((one) => one.id === id).forEach(choosePreset)}
+          options={presets.map((one) => ({ value: one.id, label: one.label }))}
+        />
+      </div>
+      <ChartStack
+        lanes={lanes}
+        view={view}
+        settledRange={settledRange}
+        limits={limits}
+        zone={zone}
+        laneHeightPx={isPhone ? laneHeightPx.phone : laneHeightPx.wide}
+        readings={readings}
+        tokens={tokens}
+        onView={onView}
+      />
+      <ContextStrip
+        whole={whole}
+        range={view.range}
+        limits={limits}
+        zone={zone}
+        rows={nutrients.map((lane) => ({
+          shape: lane.tests?.shape ?? 'circle',
+          times: (lane.tests?.points ?? []).map((point) => point.tMs),
+        }))}
+        onRange={(range) => onView({ range, crosshairMs })}
+      />
+      {groups.length > 0 && (
+        <div className="overlay-folded" role="group" aria-label="Lanes of probes">
+          {groups.map((group, i) => {
+            const isShown = isOpen(group.id, group.folded, i);
+            return (
+              <Button key={group.id} expanded={isShown} onPress={() => setUnfolded(new Map(unfolded).set(group.id, !isShown))}>
+                {`${isShown ? 'Hide' : 'Show'} ${group.title}`}
+              </Button>
+            );
+          })}
+        </div>
+      )}
+      {sheet !== null && renderTestSheet?.(sheet, () => setSheet(null))}
     </Screen>
   );
 }

@@ -1,0 +1,17 @@
+import type { TimeRange } from '../charts/time-axis.ts';
+import { spanOf } from '../charts/time-axis.ts';
+
+const quarterHourMs = 900_000;
+
+/**
+ * What to ask the server for so that a range can be shown and panned a little: about a quarter of it more on each side, on a grid,
+ * so that small moves ask for the same window again and find it in the cache, and live samples still fall inside it.
+ */
+export function fetchWindow(range: TimeRange): TimeRange {
+  let gridMs = quarterHourMs;
+  while (gridMs < spanOf(range) / 4) gridMs *= 2;
+  return {
+    fromMs: Math.floor((range.fromMs - gridMs / 2) / gridMs) * gridMs,
+    toMs: Math.ceil((range.toMs + gridMs / 2) / gridMs) * gridMs,
+  };
+}
