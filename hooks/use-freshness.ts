@@ -36,12 +36,12 @@ export function useFreshness(): Freshness {
   const [overdue, setOverdue] = useState(false);
 
   useEffect(() => {
-    if (!isInterrupted) {
-      setOverdue(false);
-      return undefined;
-    }
+    if (!isInterrupted) return undefined;
     const timer = setTimeout(() => setOverdue(true), graceMs);
-    return () => clearTimeout(timer);
+    return () => {
+      clearTimeout(timer);
+      setOverdue(false);
+    };
   }, [isInterrupted]);
 
   const stale = isInterrupted && (overdue || !online || !state.reachable) && state.heardAtMs !== null;

@@ -4,22 +4,22 @@ import { Button } from './button.tsx';
 
 /** Links behind a button. Escape and a press beside it close it; the focus goes back to the button. */
 export function Menu({ name, items }: { name: string; items: readonly { href: Href; label: string }[] }) {
-  const [open, setOpen] = useState(false);
+  /** The address at which it was opened: following a link closes it. */
+  const [openAt, setOpenAt] = useState<string | null>(null);
   const id = useId();
   const box = useRef<HTMLDivElement>(null);
   const button = useRef<HTMLButtonElement>(null);
   const path = usePathname();
-
-  useEffect(() => setOpen(false), [path]);
+  const open = openAt === path;
 
   useEffect(() => {
     if (!open) return undefined;
     const onPress = (event: PointerEvent) => {
-      if (event.target instanceof Node && box.current?.contains(event.target) !== true) setOpen(false);
+      if (event.target instanceof Node && box.current?.contains(event.target) !== true) setOpenAt(null);
     };
     const onKey = (event: KeyboardEvent) => {
       if (event.key !== 'Escape') return;
-      setOpen(false);
+      setOpenAt(null);
       button.current?.focus();
     };
     document.addEventListener('pointerdown', onPress);
@@ -32,7 +32,7 @@ export function Menu({ name, items }: { name: string; items: readonly { href: Hr
 
   return (
     <div ref={box} className="menu">
-      <Button ref={button} kind="quiet" expanded={open} controls={id} onPress={() => setOpen(!open)}>
+      <Button ref={button} kind="quiet" expanded={open} controls={id} onPress={() => setOpenAt(open ? null : path)}>
         {name}
       </Button>
       {open ? (

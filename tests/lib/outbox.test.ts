@@ -22,7 +22,7 @@ const unreachable = no({ kind: 'unreachable' });
 const first = '0190a000-0000-7000-8000-00000000000a';
 const second = '0190a000-0000-7000-8000-00000000000b';
 
-let send: ReturnType<typeof vi.fn>;
+let send: ReturnType<typeof vi.fn<(name: string, options: unknown) => Promise<unknown>>>;
 let sent: string[];
 let userId: string | null;
 
@@ -45,7 +45,7 @@ function open(storage: OutboxStorage) {
 
 beforeEach(() => {
   vi.useFakeTimers();
-  send = vi.fn(() => Promise.resolve({ fine: true }));
+  send = vi.fn<(name: string, options: unknown) => Promise<unknown>>(() => Promise.resolve({ fine: true }));
   sent = [];
   userId = 'person';
 });
