@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { dropTape, type TapeFacts, type TapePump, type TapeRun, type TapeSlot, type TapeStop } from '../../../shared/domain/drop-tape.ts';
 

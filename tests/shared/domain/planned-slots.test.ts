@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { plannedSlots, scheduledSlots, type PublishedSchedule } from '../../../shared/domain/planned-slots.ts';
 import type { ScheduleHead } from '../../../shared/mqtt/payloads.ts';
