@@ -1,7 +1,7 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { uuidv7 } from 'uuidv7';
 import { rigEndpoints } from '#shared/contract/rig.ts';
-import { assignmentAt } from '../../../server/rig/assignment-at.ts';
+import { headUseAt } from '../../../server/doses/head-use.ts';
 import { NotFoundError } from '../../../server/errors.ts';
 import { manualClock, openTestCore, type TestCore } from '../../helpers/core.ts';
 import { insertRow } from '../../helpers/rows.ts';
@@ -32,13 +32,11 @@ const carbonUse = () => ({
 type HeadChange = Partial<Omit<ReturnType<typeof carbonUse>, 'reservoirId'>> & { id?: string; reservoirId?: string | null };
 const create = (change: HeadChange = {}) => rig.heads.create({ ...rig, body: { ...carbonUse(), ...change } });
 
-/** What a run of the head takes that began at a time. */
-async function inForce(atMs: number) {
-  const statement = assignmentAt(rig.pumpId, 1, atMs).compile();
-  const { rows } = await opened.core.reader.executeQuery(statement);
-  expect(rows.length).toBeLessThan(2);
-  return rows[0];
-}
+/** What a run of the head counts as that began at a time. */
+const inForce = (atMs: number) => opened.core.writer.commit((tx) => headUseAt(tx, { id: rig.pumpId, systemId: rig.systemId }, 1, atMs));
+
+/** The assignments of all heads that are in force. */
+const openAssignments = () => opened.core.reader.selectFrom('headAssignment').select('smallestMl').where('toMs', 'is', null).execute();
 
 describe('a head', () => {
   it('is put to use on the system of its pump, without a schedule and not stopped', async () => {
@@ -81,10 +79,11 @@ describe('changing what a head is used for', () => {
     const { value } = await create();
     clock.advance(3_600_000);
     await rig.heads.update({ ...rig, headId: value.id, body: { kind: 'other', productId: null, mlPerSecond: 2 } });
-    expect(await inForce(startMs - 1)).toBeUndefined();
-    expect(await inForce(startMs)).toMatchObject({ kind: 'carbon', productId: rig.productId, mlPerSecond: 1.1 });
-    expect(await inForce(startMs + 3_599_999)).toMatchObject({ kind: 'carbon' });
-    expect(await inForce(startMs + 3_600_000)).toMatchObject({ kind: 'other', productId: null, mlPerSecond: 2, headId: value.id });
+    const strength = { oxygenDemandMgPerMl: expect.closeTo(657.82, 1) as number };
+    expect(await inForce(startMs - 1)).toMatchObject({ kind: 'carbon', oxygenDemandMgPerMl: null });
+    expect(await inForce(startMs)).toMatchObject({ kind: 'carbon', headId: value.id, ...strength });
+    expect(await inForce(startMs + 3_599_999)).toMatchObject({ kind: 'carbon', ...strength });
+    expect(await inForce(startMs + 3_600_000)).toMatchObject({ kind: 'other', headId: value.id, productRevisionId: null });
   });
 
   it('leaves what was not sent', async () => {
@@ -99,7 +98,7 @@ describe('changing what a head is used for', () => {
     await rig.heads.update({ ...rig, headId: value.id, body: { smallestMl: 0.3 } });
     clock.advance(-60_000);
     await rig.heads.update({ ...rig, headId: value.id, body: { smallestMl: 0.4 } });
-    expect(await inForce(startMs)).toMatchObject({ smallestMl: 0.4 });
+    expect(await openAssignments()).toEqual([{ smallestMl: 0.4 }]);
     expect(await rig.heads.list(rig.systemId)).toHaveLength(1);
     const rows = await opened.core.reader.selectFrom('headAssignment').select(['fromMs', 'toMs']).execute();
     expect(rows.every((row) => row.toMs === null || row.toMs >= row.fromMs)).toBe(true);
@@ -139,7 +138,7 @@ describe('changing what a head is used for', () => {
     await expect(update({ productId: rig.foreign.productId })).rejects.toMatchObject({ errors: [{ path: 'productId' }] });
     await expect(update({ reservoirId: rig.neighbour.reservoirId })).rejects.toMatchObject({ errors: [{ path: 'reservoirId' }] });
     await expect(update({ smallestMl: 1 }, rig.foreign.siteId)).rejects.toThrow(NotFoundError);
-    expect(await inForce(startMs)).toMatchObject({ smallestMl: 0.2, productId: rig.productId });
+    expect(await rig.heads.list(rig.systemId)).toEqual([value]);
   });
 
   it('shows the stop that stands', async () => {
