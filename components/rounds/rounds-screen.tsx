@@ -47,13 +47,15 @@ export function RoundsScreen() {
       ) : null}
       {query.data !== undefined && me.data !== undefined ? (
         <Section title="Sites">
-          {me.data.memberships.map((membership) => (
-            <div key={membership.siteId}>
-              <LinkText href={`/sites/${membership.siteId}`} block>
-                {membership.siteName}
-              </LinkText>
-            </div>
-          ))}
+          <div>
+            {me.data.memberships.map((membership) => (
+              <div key={membership.siteId}>
+                <LinkText href={`/sites/${membership.siteId}`} block>
+                  {membership.siteName}
+                </LinkText>
+              </div>
+            ))}
+          </div>
         </Section>
       ) : null}
     </Page>

@@ -51,11 +51,13 @@ export function SiteScreen({ siteId }: { siteId: string }) {
       </div>
       <Section title="Systems">
         {here.length === 0 && systems.isSuccess ? <Text soft>No system yet.</Text> : null}
-        {here.map((system) => (
-          <div key={system.id}>
-            <LinkText href={`/systems/${system.id}`} block>{`${system.name}, ${Math.round(system.netLitres)} L`}</LinkText>
-          </div>
-        ))}
+        <div>
+          {here.map((system) => (
+            <div key={system.id}>
+              <LinkText href={`/systems/${system.id}`} block>{`${system.name}, ${Math.round(system.netLitres)} L`}</LinkText>
+            </div>
+          ))}
+        </div>
         {isAtLeast(membership.role, 'keeper') ? <AddSystem siteId={siteId} /> : null}
       </Section>
       <MemberList siteId={siteId} isOwner={isOwner} myId={me.data.id} />

@@ -15,7 +15,7 @@ export interface DecimalFieldProps {
   ref?: Ref<HTMLInputElement>;
 }
 
-/** What was understood, where it could be misread: a comma, or figures beyond the typed ones. */
+/** What was understood of what was typed. */
 function echoOf(text: string, unit: string | undefined): string | null {
   const parsed = parseDecimal(text);
   if (!parsed.ok) return null;
@@ -26,10 +26,11 @@ function echoOf(text: string, unit: string | undefined): string | null {
 export function DecimalField({ label, text, onChange, hint, error, unit, required, ref }: DecimalFieldProps) {
   const id = useId();
   const [left, setLeft] = useState(false);
+  const [typed, setTyped] = useState(false);
   const parsed = parseDecimal(text);
   const unread = left && !parsed.ok && parsed.why !== 'empty' ? parseDecimalSentence(parsed.why, text) : null;
   const shownError = error || unread;
-  const echo = shownError ? null : echoOf(text, unit);
+  const echo = shownError || !typed ? null : echoOf(text, unit);
   return (
     <FieldFrame id={id} label={label} hint={hint} error={shownError} echo={echo}>
       <span className={shownError ? 'field-box field-wrong' : 'field-box'}>
@@ -44,7 +45,10 @@ export function DecimalField({ label, text, onChange, hint, error, unit, require
           value={text}
           aria-invalid={shownError ? true : undefined}
           aria-describedby={describedBy(id, { hint, error: shownError, echo })}
-          onChange={(event) => onChange(event.target.value)}
+          onChange={(event) => {
+            setTyped(true);
+            onChange(event.target.value);
+          }}
           onBlur={() => setLeft(true)}
         />
         {unit === undefined ? null : <span className="field-unit">{unit}</span>}
