@@ -7,6 +7,7 @@ import { controlHandlers } from './api/control.ts';
 import { deviceHandlers } from './api/devices.ts';
 import { doseHandlers } from './api/doses.ts';
 import { liveHandlers } from './api/live.ts';
+import { messageHandlers } from './api/messages.ts';
 import { productHandlers } from './api/products.ts';
 import { recordHandlers } from './api/records.ts';
 import { createRefreshCookie } from './api/refresh-cookie.ts';
@@ -14,6 +15,7 @@ import { rigHandlers } from './api/rig.ts';
 import type { Handlers } from './api/route.ts';
 import { siteHandlers } from './api/sites.ts';
 import { systemHandlers } from './api/systems.ts';
+import { telemetryHandlers } from './api/telemetry.ts';
 import { createAuth } from './auth/create-auth.ts';
 import { readJwtSecret } from './auth/jwt-secret.ts';
 import { makeWelcomeCode } from './auth/welcome-code.ts';
@@ -34,6 +36,7 @@ import { createSchedules } from './schedules/create-schedules.ts';
 import { createSites } from './sites/create-sites.ts';
 import { createStops } from './stops/create-stops.ts';
 import { createSystems } from './systems/create-systems.ts';
+import { createTelemetry } from './telemetry/create-telemetry.ts';
 
 export type Context = Awaited<ReturnType<typeof createContext>>;
 
@@ -78,16 +81,20 @@ export async function createContext(core: Core, options: ContextOptions) {
   const doses = createDoses(core);
   const alarms = createAlarms(core, stops);
   const ingest = createIngest(core, { ...orders.hooks, onRun: () => {} });
+  const telemetry = createTelemetry(core);
   const live = createLive(core, changes, options.live);
   const jobs = createJobs(core);
 
-  const handlers: Partial<Handlers<EndpointName>> = {
+  // Not partial: an endpoint without a handler does not compile.
+  const handlers: Handlers<EndpointName> = {
     ...authHandlers(auth, createRefreshCookie(isSecure), config.PUBLIC_URL),
     ...siteHandlers(core, sites),
     ...systemHandlers(systems),
     ...productHandlers(products),
     ...deviceHandlers(devices),
+    ...messageHandlers(ingest, telemetry),
     ...rigHandlers(heads, reservoirs),
+    ...telemetryHandlers(telemetry),
     ...recordHandlers(core),
     ...doseHandlers(doses),
     ...controlHandlers({ schedules, stops, orders, listHeads: heads.list }),
@@ -117,6 +124,7 @@ export async function createContext(core: Core, options: ContextOptions) {
       await orders.close();
       await schedules.close();
       await notify.close();
+      await telemetry.close();
     },
   };
 }

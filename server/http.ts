@@ -36,9 +36,11 @@ function requestLog(log: Logger): RequestHandler {
   return pinoHttp({
     logger: log,
     serializers: { req: loggedRequest, res: (response: { statusCode: number }) => ({ statusCode: response.statusCode }) },
-    customLogLevel: (_request, response, error) => {
-      if (error !== undefined || response.statusCode >= 500) return 'error';
-      return response.statusCode >= 400 ? 'info' : 'debug';
+    // Asked every few seconds by whoever watches the server, and answered 503 until it is ready.
+    autoLogging: { ignore: (request) => /^\/api\/(health|ready|metrics)$/.test(request.url ?? '') },
+    customLogLevel: (_request, { statusCode }, error) => {
+      if (error !== undefined || statusCode >= 500) return 'error';
+      return statusCode === 403 || statusCode === 429 ? 'info' : 'debug';
     },
   });
 }

@@ -74,14 +74,12 @@ function routeOf(name: EndpointName, handler: CheckedHandler, options: MountOpti
   };
 }
 
-/** Routes for the handlers given, with everything that the endpoint table says of them. */
-export function mountEndpoints(handlers: Partial<Handlers<EndpointName>>, options: MountOptions): Router {
+/** Every route of the endpoint table, held to everything that the table says of it. */
+export function mountEndpoints(handlers: Handlers<EndpointName>, options: MountOptions): Router {
   const router = Router();
   for (const name of Object.keys(endpoints) as EndpointName[]) {
-    const handler = handlers[name];
-    if (handler === undefined) continue;
     const { method, path } = endpoints[name];
-    router[method](path, routeOf(name, handler as CheckedHandler, options));
+    router[method](path, routeOf(name, handlers[name] as CheckedHandler, options));
   }
   return router;
 }

@@ -106,7 +106,10 @@ export function createAuth(core: Core, options: AuthOptions, changes: AccessChan
       limited(credentials.email, caller, async () => {
         const user = await reader.selectFrom('user').selectAll().where('email', '=', credentials.email).executeTakeFirst();
         const isRight = await hasher.verify(user?.passwordHash, credentials.password);
-        if (user === undefined || !isRight) throw new NotSignedInError(wrongPassword);
+        if (user === undefined || !isRight) {
+          core.log.info({ address: caller.address }, 'a sign-in failed');
+          throw new NotSignedInError(wrongPassword);
+        }
         return writer.commit((tx) => {
           // The password may have been changed while this one was checked.
           if (userByEmail(tx, user.email)?.passwordHash !== user.passwordHash) throw new NotSignedInError(wrongPassword);
