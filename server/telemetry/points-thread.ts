@@ -28,7 +28,8 @@ export function createPointsThread(databaseFile: string): PointsThread {
   let nextId = 0;
 
   function start(): Worker {
-    const loader = pathToFileURL(createRequire(import.meta.url).resolve('tsx/esm/api')).href;
+    // Resolving finds the CommonJS twin, which cannot register; the module beside it can.
+    const loader = new URL('./index.mjs', pathToFileURL(createRequire(import.meta.url).resolve('tsx/esm/api'))).href;
     const entry = new URL('./points-worker.ts', import.meta.url).href;
     const started = new Worker(bootstrap, { eval: true, workerData: { databaseFile, loader, entry } });
     started.unref();
