@@ -39,7 +39,7 @@ export function StopControl({ system }: { system: System }) {
   }
 
   return (
-    <div className="stop">
+    <section className="stop" aria-label="Dosing">
       {panel === 'confirm' ? <ConfirmStop heads={carbonHeads(heads)} onStop={stopNow} onCancel={() => setPanel('none')} /> : null}
       {panel === 'outcome' ? (
         <StopOutcome
@@ -71,6 +71,6 @@ export function StopControl({ system }: { system: System }) {
           <StopButton onHeld={stopNow} onPressed={() => setPanel(panel === 'confirm' ? 'none' : 'confirm')} isOpen={panel === 'confirm'} />
         )}
       </div>
-    </div>
+    </section>
   );
 }

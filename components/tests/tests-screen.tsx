@@ -38,7 +38,7 @@ export function TestsScreen({ systemId, startOpen = false }: { systemId: string;
 
   const timeZone = system?.timeZone ?? 'UTC';
   const mayWrite = system !== undefined && isAtLeast(system.role, 'sitter');
-  const mayCorrect = (test: Test) => mayWrite && (isAtLeast(system.role, 'keeper') || test.by === me?.name);
+  const mayCorrect = (test: Test) => mayWrite && (isAtLeast(system.role, 'keeper') || test.byId === me?.id);
 
   function takeOut(test: Test): void {
     setOpened(null);

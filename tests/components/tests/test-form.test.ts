@@ -14,6 +14,7 @@ const test: Test = {
   canonicalMgPerL: 0.092,
   note: '',
   by: 'Keeper',
+  byId: '0198f000-0000-7000-8000-000000000004',
   edited: false,
 };
 
