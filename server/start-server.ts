@@ -129,6 +129,9 @@ async function start(config: Config, options: StartOptions, closers: ReturnType<
   const context = await createContext(core, { ownUrl: () => url, live: options.live });
   closers.add(context.close);
 
+  let demo: Promise<Demo> | null = null;
+  // Ended after the broker, as real devices outlive it: no last will then tells of a device that never went away.
+  closers.add(() => endDemo(demo, log));
   const broker = await startBroker(context);
   closers.add(broker.close);
   await context.alarms.start();
@@ -150,11 +153,9 @@ async function start(config: Config, options: StartOptions, closers: ReturnType<
   url = urlOf(config, httpPort);
   const mqttUrl = config.MQTT_URL ?? mqttUrlOf(config, broker.port);
 
-  let demo: Promise<Demo> | null = null;
   if (config.DEMO) {
     const { publishDue } = context.schedules;
     demo = startDemo({ core, mqttUrl, publishSchedules: publishDue, print: options.onProgress ?? (() => {}) });
-    closers.add(() => endDemo(demo, log));
   }
   const ready =
     demo === null

@@ -13,13 +13,14 @@ async function main(planFile: string): Promise<void> {
   const clock = createWorldClock({ speed: 1, wallNowMs: () => Date.now() });
   const systems = plan.systems.map((system) => createDemoSystem(plan, system, clock, (line) => console.log(line)));
 
-  let isEnding = false;
+  // Without a goodbye: to the server these are devices far away, which do not end when it does.
   const end = () => {
-    if (isEnding) return;
-    isEnding = true;
-    void Promise.all(systems.map((system) => system.close())).then(() => process.exit());
+    for (const system of systems) system.cut();
+    process.exit();
   };
-  for (const signal of ['SIGINT', 'SIGTERM'] as const) process.on(signal, end);
+  // A terminal sends Ctrl-C to the whole group; this process ends with the one that started it, and not before.
+  process.on('SIGINT', () => undefined);
+  process.on('SIGTERM', end);
   process.stdin.on('end', end).on('error', end).resume();
 
   const shares = systems.map(() => 0);
@@ -29,7 +30,7 @@ async function main(planFile: string): Promise<void> {
       system.live((share) => {
         shares[index] = share;
         const tenths = Math.floor((10 * shares.reduce((sum, one) => sum + one, 0)) / shares.length);
-        if (tenths === told) return;
+        if (tenths === told || systems.every((one) => !one.isFirst)) return;
         told = tenths;
         console.log(`history ${tenths * 10} %`);
       }),

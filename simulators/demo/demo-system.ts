@@ -15,9 +15,12 @@ import { createSimpleWater } from '../water/simple-water.ts';
 import { tellProbePast } from './probe-past.ts';
 
 export interface DemoSystem {
+  /** Nothing of it was told yet: the whole past comes first. */
+  isFirst: boolean;
   /** Resolves when the past is told and the devices are live. */
   live(progress: (share: number) => void): Promise<void>;
-  close(): Promise<void>;
+  /** The power goes: nobody is told. */
+  cut(): void;
 }
 
 const MINUTE_MS = 60_000;
@@ -99,6 +102,7 @@ export function createDemoSystem(plan: FleetPlan, system: FleetSystem, clock: Wo
       : createProbeDevice({ ...devices(system.probe.deviceId), password: system.probe.password, channels, water, onSampled: keepWater });
 
   return {
+    isFirst,
     async live(progress) {
       if (system.probe !== null && probe !== null) {
         const isCoarse = (atMs: number) =>
@@ -123,8 +127,9 @@ export function createDemoSystem(plan: FleetPlan, system: FleetSystem, clock: Wo
       waterFile.save(water.save());
       progress(1);
     },
-    async close() {
-      await Promise.all([pump?.close(), probe?.close()]);
+    cut() {
+      pump?.cut();
+      probe?.cut();
     },
   };
 }
