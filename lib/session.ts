@@ -84,6 +84,8 @@ export function createSession({ askRefresh, nowMs }: SessionParts) {
     /** A token that is good for a while, refreshed if need be; null when signed out. */
     async accessToken(): Promise<string | null> {
       if (token !== null && token.endsAtMs - nowMs() > renewBeforeEndMs) return token.text;
+      // The cookie is gone with the session: what is still on its way asks for nothing more.
+      if (state.status === 'signed-out') return null;
       return refresh();
     },
   };

@@ -53,6 +53,14 @@ describe('the session', () => {
     expect(session.get()).toEqual({ status: 'signed-out' });
   });
 
+  it('asks nothing more once it is signed out', async () => {
+    const ask = vi.fn(() => Promise.resolve(grant('one')));
+    const { session } = open(ask);
+    session.forget();
+    expect(await session.accessToken()).toBeNull();
+    expect(ask).not.toHaveBeenCalled();
+  });
+
   it('signs nobody out for a lost network', async () => {
     const ask = vi
       .fn()
