@@ -26,6 +26,8 @@ export const configSchema = z
   .refine((config) => (config.TLS_CERT === undefined) === (config.TLS_KEY === undefined), {
     path: ['TLS_KEY'],
     message: 'TLS_CERT and TLS_KEY go together',
+    // Also when another value is bad: all problems are told at once.
+    when: () => true,
   });
 
 export type Config = z.infer<typeof configSchema>;
