@@ -37,6 +37,4 @@ export function createConnectionStore(nowMs: () => number) {
   };
 }
 
-export type ConnectionStore = ReturnType<typeof createConnectionStore>;
-
 export const connection = createConnectionStore(() => Date.now());

@@ -166,5 +166,3 @@ export function createOutbox(parts: OutboxParts) {
     },
   };
 }
-
-export type Outbox = ReturnType<typeof createOutbox>;

@@ -91,6 +91,4 @@ export function createSession({ askRefresh, nowMs }: SessionParts) {
   };
 }
 
-export type Session = ReturnType<typeof createSession>;
-
 export const session = createSession({ askRefresh: () => request('refresh', {}, null), nowMs: () => Date.now() });
