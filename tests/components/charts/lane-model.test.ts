@@ -48,13 +48,15 @@ describe('laneModel', () => {
   });
   it('lays time from the gutter to the right edge, the same for every lane', () => {
     const ticks = placedTimeTicks(frame);
-    expect(ticks[0]?.x).toBe(48);
+    // 4 June: three of ten days along.
+    expect(ticks[0]?.x).toBe(48 + 90);
     expect(laneModel(empty, frame).timeTicks).toEqual(ticks);
   });
   it('gives labels the room that larger text needs', () => {
     const large = { ...frame, remPx: 32 };
     expect(laneModel(empty, large).plot.left).toBe(96);
-    expect(placedTimeTicks(large).length).toBeLessThan(placedTimeTicks(frame).length);
+    const day = { fromMs, toMs: fromMs + dayMs };
+    expect(placedTimeTicks({ ...large, range: day }).length).toBeLessThan(placedTimeTicks({ ...frame, range: day }).length);
   });
   it('reaches over the band, the limits and everything in sight', () => {
     const lane: LaneInput = {
