@@ -217,6 +217,8 @@ export async function createBroker(options: BrokerOptions): Promise<Broker> {
       await listener.stop();
       const patience = new Promise<void>((resolve) => setTimeout(resolve, DRAIN_ON_CLOSE_MS).unref());
       await Promise.race([Promise.allSettled(receiving), patience]);
+      // The acknowledgements are written when the event loop comes round.
+      await new Promise((resolve) => setImmediate(resolve));
       await new Promise<void>((resolve) => aedes.close(resolve));
       for (const socket of sockets) socket.destroy();
     },

@@ -71,7 +71,7 @@ export class GuardedConnection extends Duplex {
 
   /** Passes on the next piece; false when there is none, or it must wait. */
   private step(): boolean {
-    if (this.scanner.isInBody()) {
+    if (this.waiting === null && this.scanner.isInBody()) {
       if (this.offset >= this.chunk.length) return false;
       const { bytes, offset } = this.scanner.body(this.chunk, this.offset);
       this.offset = offset;
