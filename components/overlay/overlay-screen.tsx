@@ -27,13 +27,10 @@ import { rangeSentence } from './range-sentence.ts';
 import { useOverlayLanes } from './use-overlay-lanes.ts';
 import { useOverlayView } from './use-overlay-view.ts';
 
-/** What the sheet of a test is asked to do: a new one at a time, or one that is there. */
-export type TestSheetTarget = { readonly atMs: number } | { readonly testId: string };
-
 export interface OverlayScreenProps {
   systemId: string;
-  /** Draws the sheet in which a test is written down or corrected; given by the route, since tests are another feature. */
-  renderTestSheet?: (target: TestSheetTarget, onClose: () => void) => ReactNode;
+  /** Draws the sheet for a test, `null` for a new one; given by the route, since tests are another feature. */
+  renderTestSheet?: (testId: string | null, onClose: () => void) => ReactNode;
 }
 
 /** Tests, doses and probes over one time axis. */
@@ -64,7 +61,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
   const tests = useTests(systemId);
   const series = useSeries(systemId);
   const [unfolded, setUnfolded] = useState<ReadonlyMap<string, boolean>>(new Map());
-  const [sheet, setSheet] = useState<TestSheetTarget | null>(null);
+  const [sheet, setSheet] = useState<{ readonly testId: string | null } | null>(null);
 
   const earliestTestMs = useMemo(() => Math.min(...(tests.data ?? []).map((test) => Date.parse(test.at)), Infinity), [tests.data]);
   const { view, settledRange, limits, preset, nowMs, onView, choosePreset } = useOverlayView(earliestTestMs);
@@ -103,7 +100,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
         <Text variant={isPhone ? 'sentence' : 'sentenceWide'}>
           {rangeSentence(preset?.words ?? null, settledRange, zone, nutrients, dose)}
         </Text>
-        {mayLog && <Button onPress={() => setSheet({ atMs: crosshairMs ?? nowMs })}>Write down a test</Button>}
+        {mayLog && <Button onPress={() => setSheet({ testId: null })}>Write down a test</Button>}
       </div>
       {[tests.error, series.error, error]
         .filter((one) => one !== null)
@@ -153,7 +150,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
           })}
         </div>
       )}
-      {sheet !== null && renderTestSheet?.(sheet, () => setSheet(null))}
+      {sheet !== null && renderTestSheet?.(sheet.testId, () => setSheet(null))}
     </Screen>
   );
 }
