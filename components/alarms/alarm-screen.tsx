@@ -54,7 +54,7 @@ function AlarmHead({ alarm, system, nowMs }: { alarm: Alarm; system: System; now
   const isCalling = alarm.priority === 'urgent' && (alarm.active || !alarm.acknowledged);
   const head = (
     <div style={{ display: 'flex', flexDirection: 'column', gap: 8 }}>
-      <Heading level={1} variant="heading">
+      <Heading level={1} variant="heading" inherit>
         {alarmTitles[alarm.code]}
       </Heading>
       <PriorityBars priority={alarm.priority} />

@@ -52,7 +52,7 @@ export function StopControl({ system }: { system: System }) {
         />
       ) : null}
       {panel === 'resume' ? (
-        <ResumePanel system={system} heads={state.stopped} latched={state.latched} onClose={() => setPanel('none')} />
+        <ResumePanel system={system} heads={state.stopped} latched={system.status.latched} onClose={() => setPanel('none')} />
       ) : null}
       <div className="stop-bar">
         {isAllStopped && panel !== 'outcome' ? (

@@ -72,10 +72,9 @@ export interface StopState {
   stopped: Head[];
   running: Head[];
   since: string | null;
-  latched: boolean;
 }
 
-/** Whether dosing is stopped, and whether an alarm holds it. */
+/** Which carbon heads are stopped. Whether a latch still holds them is the system's to say: a reset releases it before the resume. */
 export function stopState(heads: readonly Head[]): StopState {
   const carbon = carbonHeads(heads);
   const stopped = carbon.filter((head) => head.stop !== null);
@@ -84,6 +83,5 @@ export function stopState(heads: readonly Head[]): StopState {
     stopped,
     running: carbon.filter((head) => head.stop === null),
     since: times[0] ?? null,
-    latched: stopped.some((head) => head.stop?.cause === 'interlock'),
   };
 }

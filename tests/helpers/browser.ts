@@ -58,7 +58,9 @@ export async function openPage(browser: Browser, url: string, width: Width): Pro
           .withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'])
           .options({ rules: { 'target-size': { enabled: true } } })
           .analyze();
-        const found = results.violations.map((violation) => `${violation.id}: ${violation.nodes.map((node) => node.html).join(' | ')}`);
+        const found = results.violations.map(
+          (violation) => `${violation.id}: ${violation.nodes.map((node) => `${node.html} (${node.failureSummary ?? ''})`).join(' | ')}`,
+        );
         expect(found, `${page.url()} in ${colorScheme}`).toEqual([]);
       }
       await page.emulateMedia({ colorScheme: 'light' });

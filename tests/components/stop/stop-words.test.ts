@@ -65,10 +65,6 @@ describe('the state of dosing', () => {
       makeHead({ id: 'c' }),
       makeHead({ id: 'd', kind: 'other' }),
     ]);
-    expect([state.stopped.length, state.running.length, state.since, state.latched]).toEqual([2, 1, '2026-03-08T12:00:00Z', false]);
-  });
-
-  it('is latched when an alarm holds one of them', () => {
-    expect(stopState([makeHead({ stop: stop('2026-03-08T13:00:00Z', 'interlock') })]).latched).toBe(true);
+    expect([state.stopped.length, state.running.length, state.since]).toEqual([2, 1, '2026-03-08T12:00:00Z']);
   });
 });
