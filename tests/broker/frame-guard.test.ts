@@ -39,7 +39,7 @@ describe('before a device has signed in', () => {
     await expect(tooBig.next()).rejects.toThrow('closed');
   });
 
-  it('a length of more than four bytes closes the connection [MQTT-2.2.3]', async () => {
+  it('a length of more than four bytes closes the connection (section 2.2.3)', async () => {
     const raw = await openRaw(opened.broker.port);
     raw.send(Buffer.from([0x10, 0xff, 0xff, 0xff, 0xff, 0x01]));
     await raw.closed;
