@@ -96,8 +96,9 @@ function run({ options, scenarioName, scenarioArgument }: Exclude<ReturnType<typ
   const folder = options.state ?? path.join(tmpdir(), 'steadfall-simulators', options.device);
   mkdirSync(folder, { recursive: true, mode: 0o700 });
   const { url, device: deviceId, password, seed } = options;
+  let fromMs = options.from ?? (options.speed > 1 ? Date.now() - DAY_MS : Date.now());
   const clock = createWorldClock({
-    fromMs: options.from ?? (options.speed > 1 ? Date.now() - DAY_MS : undefined),
+    fromMs,
     speed: options.speed,
     wallNowMs: () => Date.now(),
   });
@@ -115,13 +116,13 @@ function run({ options, scenarioName, scenarioArgument }: Exclude<ReturnType<typ
       nitrateMgPerL: 15,
       phosphateMgPerL: 0.2,
     },
-    clock.nowMs(),
+    fromMs,
   );
   let pump: PumpDevice | null = null;
   const start = () => {
     if (options.kind === 'probe') {
       const probe = createProbeDevice({ ...shared, channels: options.channels, water });
-      probe.start();
+      probe.start(fromMs);
       return probe;
     }
     const heads = Array.from({ length: options.heads }, (_, index) => index + 1);
@@ -137,6 +138,7 @@ function run({ options, scenarioName, scenarioArgument }: Exclude<ReturnType<typ
   const restart = () => {
     device.cut();
     log('restart');
+    fromMs = clock.nowMs();
     device = start();
   };
   const quit = async () => {

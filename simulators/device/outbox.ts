@@ -1,4 +1,4 @@
-import { appendFileSync, closeSync, existsSync, mkdirSync, openSync, readFileSync, truncateSync, writeSync } from 'node:fs';
+import { closeSync, existsSync, mkdirSync, openSync, readFileSync, truncateSync, writeFileSync, writeSync } from 'node:fs';
 import path from 'node:path';
 import type { Uplink } from '#shared/mqtt/topics.ts';
 
@@ -46,8 +46,11 @@ export function fileOutbox(folder: string, name: string): Outbox {
   mkdirSync(folder, { recursive: true, mode: 0o700 });
   const file = path.join(folder, name);
   const waiting = memoryOutbox();
-  if (existsSync(file)) for (const line of wholeLines(readFileSync(file, 'utf8'))) waiting.push(JSON.parse(line) as Outgoing);
-  else appendFileSync(file, '', { mode: 0o600 });
+  const kept = existsSync(file) ? readFileSync(file, 'utf8') : '';
+  // The last line may have been cut off by the power.
+  const whole = kept.slice(0, kept.lastIndexOf('\n') + 1);
+  writeFileSync(file, whole, { mode: 0o600 });
+  for (const line of whole.split('\n').slice(0, -1)) waiting.push(JSON.parse(line) as Outgoing);
   const handle = openSync(file, 'a');
   return {
     push(message) {
@@ -64,12 +67,4 @@ export function fileOutbox(folder: string, name: string): Outbox {
     },
     close: () => closeSync(handle),
   };
-}
-
-/** The last line may have been cut off by the power. */
-function wholeLines(text: string): string[] {
-  return text
-    .slice(0, text.lastIndexOf('\n') + 1)
-    .split('\n')
-    .slice(0, -1);
 }

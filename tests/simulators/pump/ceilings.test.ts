@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import { array, assert, boolean, constant, double, integer, oneof, property, record } from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { RunPayload } from '#shared/mqtt/payloads.ts';
 import { plan, pumpBench } from './pump-bench.ts';
@@ -104,22 +104,22 @@ describe('the ceilings of a pump', () => {
   });
 });
 
-const anything = fc.oneof(
-  fc.record({ kind: fc.constant('pass' as const), ms: fc.integer({ min: 1, max: 1_200_000 }) }),
-  fc.record({ kind: fc.constant('stall' as const), ms: fc.integer({ min: 1, max: 5_400_000 }) }),
-  fc.record({ kind: fc.constant('restart' as const), ms: fc.integer({ min: 0, max: 120_000 }) }),
-  fc.record({ kind: fc.constant('button' as const), ml: fc.double({ min: 0.01, max: 3, noNaN: true }) }),
-  fc.record({ kind: fc.constant('dose' as const), ml: fc.double({ min: 0.01, max: 3, noNaN: true }) }),
-  fc.record({ kind: fc.constant('prime' as const), seconds: fc.integer({ min: 1, max: 3 }) }),
-  fc.record({ kind: fc.constant('schedule' as const), slotMl: fc.double({ min: 0, max: 2.5, noNaN: true }), enabled: fc.boolean() }),
-  fc.record({ kind: fc.constant('stop' as const) }),
-  fc.record({ kind: fc.constant('resume' as const) }),
+const anything = oneof(
+  record({ kind: constant('pass' as const), ms: integer({ min: 1, max: 1_200_000 }) }),
+  record({ kind: constant('stall' as const), ms: integer({ min: 1, max: 5_400_000 }) }),
+  record({ kind: constant('restart' as const), ms: integer({ min: 0, max: 120_000 }) }),
+  record({ kind: constant('button' as const), ml: double({ min: 0.01, max: 3, noNaN: true }) }),
+  record({ kind: constant('dose' as const), ml: double({ min: 0.01, max: 3, noNaN: true }) }),
+  record({ kind: constant('prime' as const), seconds: integer({ min: 1, max: 3 }) }),
+  record({ kind: constant('schedule' as const), slotMl: double({ min: 0, max: 2.5, noNaN: true }), enabled: boolean() }),
+  record({ kind: constant('stop' as const) }),
+  record({ kind: constant('resume' as const) }),
 );
 
 describe('whatever happens to a pump', () => {
   it('it never gives more than its ceilings in any window', () => {
-    fc.assert(
-      fc.property(fc.array(anything, { maxLength: 60 }), (happenings) => {
+    assert(
+      property(array(anything, { maxLength: 60 }), (happenings) => {
         const bench = pumpBench();
         let version = 1;
         const slotsUtcMin = [0, 1, 2, 30, 300, 720, 721, 725, 730, 731, 800, 1000, 1439];
