@@ -1,17 +1,17 @@
 import { readFileSync } from 'node:fs';
-import type { Broker } from '../broker/broker.ts';
+import type { Broker, DeviceMessage } from '../broker/broker.ts';
 import { createBroker } from '../broker/create-broker.ts';
 import type { Context } from './context.ts';
+import { connectExternalBroker } from './ingest/external-broker.ts';
 import { republishStates } from './ingest/republish-states.ts';
 
 function tlsOf({ TLS_CERT, TLS_KEY }: Context['core']['config']) {
   return TLS_CERT === undefined || TLS_KEY === undefined ? {} : { tls: { cert: readFileSync(TLS_CERT), key: readFileSync(TLS_KEY) } };
 }
 
-/** Opens the port for devices, and puts back what the broker of the last start had kept for them. */
-export async function startBroker({ core, devices, ingest, orders, schedules, broker: slot }: Context): Promise<Broker> {
+function startEmbedded({ core, devices, ingest, orders }: Context): Promise<Broker> {
   const { config, clock, log } = core;
-  const broker = await createBroker({
+  return createBroker({
     host: config.HOST,
     port: config.MQTT_PORT,
     ...tlsOf(config),
@@ -24,6 +24,24 @@ export async function startBroker({ core, devices, ingest, orders, schedules, br
       listening: orders.deviceConnected,
     },
   });
+}
+
+/** Opens the port for devices, or connects to the broker that they use, and puts there what they have to find. */
+export async function startBroker(context: Context): Promise<Broker> {
+  const { core, ingest, orders, schedules, broker: slot } = context;
+  const { config, clock, log } = core;
+  if (config.MQTT_URL !== undefined) {
+    const policy = {
+      receive: (message: DeviceMessage) => ingest.receive({ ...message, receivedMs: clock.nowMs() }),
+      listening: orders.deviceConnected,
+    };
+    const broker = connectExternalBroker({ url: config.MQTT_URL, policy, log });
+    slot.set(broker, broker.isUp);
+    // It may be away, and has kept what was published: nothing waits for it.
+    schedules.republishAll().catch((error: unknown) => log.warn({ err: error }, 'schedules are published later'));
+    return broker;
+  }
+  const broker = await startEmbedded(context);
   slot.set(broker);
   await republishStates(core.reader, broker);
   await schedules.republishAll();

@@ -1,5 +1,6 @@
 import type { Request } from 'express';
-import type { Auth, Caller } from '../auth/create-auth.ts';
+import type { Caller } from '../auth/caller.ts';
+import type { Auth } from '../auth/create-auth.ts';
 import type { Row } from '../db/schema.ts';
 import { NotSignedInError } from '../errors.ts';
 import { bearerOf } from './bearer.ts';

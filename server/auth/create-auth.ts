@@ -1,26 +1,21 @@
 import { createHash, timingSafeEqual } from 'node:crypto';
 import { uuidv7 } from 'uuidv7';
-import { newPasswordSchema, type Me, type User } from '#shared/contract/auth.ts';
+import type { Me, User } from '#shared/contract/auth.ts';
 import type { AccessChanges } from '../access/access-changes.ts';
 import type { Person } from '../access/person.ts';
 import { recordAudit } from '../audit/record-audit.ts';
 import type { Core } from '../core.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
-import { BadInputError, NotFoundError, NotSignedInError, RuleError } from '../errors.ts';
+import { BadInputError, NotSignedInError, RuleError } from '../errors.ts';
 import { addSite } from '../sites/add-site.ts';
+import { acceptInvite } from './accept-invite.ts';
 import { createAttemptLimit } from './attempt-limit.ts';
-import { hashOfToken } from './hash-of-token.ts';
+import type { Caller } from './caller.ts';
 import { createPasswordHasher } from './password-hasher.ts';
 import { createSessions, type OpenedSession, type Sessions } from './sessions.ts';
 import { addUser, hasUsers, userByEmail } from './users.ts';
 import { plainWelcomeCode } from './welcome-code.ts';
-
-/** Where an attempt comes from. */
-export interface Caller {
-  address: string;
-  userAgent: string;
-}
 
 export interface AuthOptions {
   secret: string;
@@ -138,57 +133,7 @@ export function createAuth(core: Core, options: AuthOptions, changes: AccessChan
         });
       }),
 
-    async acceptInvite(form, caller) {
-      const invited = await reader.selectFrom('invite').selectAll().where('tokenHash', '=', hashOfToken(form.token)).executeTakeFirst();
-      const gone = 'This invitation is no longer good: ask for a new one';
-      const isGood = (invite: { acceptedAtMs: number | null; expiresAtMs: number }) =>
-        invite.acceptedAtMs === null && invite.expiresAtMs > clock.nowMs();
-      return limited(invited?.email ?? 'invite', caller, async () => {
-        if (invited === undefined || !isGood(invited)) throw new NotFoundError(gone);
-        const known = await reader.selectFrom('user').selectAll().where('email', '=', invited.email).executeTakeFirst();
-        let passwordHash: string;
-        if (known === undefined) {
-          const checked = newPasswordSchema.safeParse(form.password);
-          if (!checked.success) {
-            throw new BadInputError(checked.error.issues.map((issue) => ({ path: 'password', message: issue.message })));
-          }
-          passwordHash = await hasher.hash(form.password);
-        } else {
-          if (!(await hasher.verify(known.passwordHash, form.password))) {
-            throw new NotSignedInError('You have an account with this e-mail address already: give its password');
-          }
-          passwordHash = known.passwordHash;
-        }
-        return writer.commit((tx) => {
-          const nowMs = clock.nowMs();
-          const invite = tx.first(query.selectFrom('invite').selectAll().where('id', '=', invited.id));
-          if (invite === undefined || !isGood(invite)) throw new NotFoundError(gone);
-          // An account made meanwhile was not asked for its password.
-          const account = userByEmail(tx, invite.email);
-          if (account?.passwordHash !== known?.passwordHash) throw new NotSignedInError('The account has changed meanwhile: try again');
-          const user = account ?? addUser(tx, { email: invite.email, name: form.name, passwordHash, nowMs });
-          const member = { siteId: invite.siteId, userId: user.id, role: invite.role, createdAtMs: nowMs };
-          // Somebody who is a member already keeps the role that an owner gave meanwhile.
-          tx.run(
-            query
-              .insertInto('membership')
-              .values(member)
-              .onConflict((conflict) => conflict.doNothing()),
-          );
-          tx.run(query.updateTable('invite').set({ acceptedAtMs: nowMs }).where('id', '=', invite.id));
-          recordAudit(tx, {
-            atMs: nowMs,
-            siteId: invite.siteId,
-            actor: { kind: 'user', id: user.id },
-            action: 'accept',
-            entity: 'invite',
-            entityId: invite.id,
-            after: { role: invite.role },
-          });
-          return openSession(tx, user, caller);
-        });
-      });
-    },
+    acceptInvite: (form, caller) => acceptInvite({ core, hasher, limited, openSession }, form, caller),
 
     async rename(userId, name) {
       await writer.commit((tx) => tx.run(query.updateTable('user').set({ name }).where('id', '=', userId)));

@@ -14,7 +14,6 @@ export interface Notice {
 
 /** Addresses and subjects become header lines of a mail: a line break in one would start a header of its own. */
 function oneLine(text: string): string {
-  // eslint-disable-next-line no-control-regex -- control characters are what is taken out
   return text.replace(/[\u0000-\u001f\u007f]+/g, ' ').trim();
 }
 

@@ -1,0 +1,5 @@
+/** Where an attempt comes from. */
+export interface Caller {
+  address: string;
+  userAgent: string;
+}
