@@ -23,6 +23,8 @@ export interface ChartStackProps {
   readings: readonly Reading[];
   tokens: ThemeTokens;
   onView: (view: ChartView) => void;
+  /** A drag began or ended. */
+  onHold: (isHeld: boolean) => void;
 }
 
 const axisHeightRem = 1.75;
@@ -35,7 +37,7 @@ function spokenReadings(crosshairMs: number | null, readings: readonly Reading[]
 }
 
 /** Lanes under each other that share one time axis, one crosshair, and the gestures and keys that move them. */
-export function ChartStack({ lanes, view, settledRange, limits, zone, laneHeightPx, readings, tokens, onView }: ChartStackProps) {
+export function ChartStack({ lanes, view, settledRange, limits, zone, laneHeightPx, readings, tokens, onView, onHold }: ChartStackProps) {
   const surface = useRef<HTMLDivElement>(null);
   const handle = useRef<HTMLDivElement>(null);
   const { widthPx, remPx } = useElementWidth(surface);
@@ -55,6 +57,7 @@ export function ChartStack({ lanes, view, settledRange, limits, zone, laneHeight
     plotWidthPx: plot.right - plot.left,
     onRange: (next) => onView({ range: next, crosshairMs }),
     onCrosshair: (tMs) => onView({ range, crosshairMs: tMs }),
+    onHold,
   });
 
   function onKeyDown(event: KeyboardEvent): void {

@@ -20,6 +20,8 @@ export interface ContextStripProps {
   /** When tests were made, each kind on a row of its own. */
   rows: readonly { readonly shape: TestShape; readonly times: readonly number[] }[];
   onRange: (range: TimeRange) => void;
+  /** A drag began or ended. */
+  onHold: (isHeld: boolean) => void;
 }
 
 const heightPx = 44;
@@ -32,7 +34,7 @@ interface Drag {
 }
 
 /** The whole history in one strip: drag the window or its ends, or press beside it. Arrow keys move it by half of itself. */
-export function ContextStrip({ whole, range, limits, zone, rows, onRange }: ContextStripProps) {
+export function ContextStrip({ whole, range, limits, zone, rows, onRange, onHold }: ContextStripProps) {
   const strip = useRef<HTMLDivElement>(null);
   const drag = useRef<Drag | null>(null);
   const { widthPx, remPx } = useElementWidth(strip);
@@ -46,6 +48,11 @@ export function ContextStrip({ whole, range, limits, zone, rows, onRange }: Cont
     const x = placeOf(event);
     const deltaMs = scale.toMs(x) - scale.toMs(held.startX);
     onRange(dragWindow(held.start, held.grip, deltaMs, scale.toMs(held.startX), limits));
+  }
+
+  function letGo(): void {
+    drag.current = null;
+    onHold(false);
   }
 
   function onKeyDown(event: KeyboardEvent): void {
@@ -72,11 +79,12 @@ export function ContextStrip({ whole, range, limits, zone, rows, onRange }: Cont
         const startX = placeOf(event);
         drag.current = { grip: gripAt(startX, window), startX, start: range };
         event.currentTarget.setPointerCapture(event.pointerId);
+        onHold(true);
         move(event);
       }}
       onPointerMove={move}
-      onPointerUp={() => (drag.current = null)}
-      onPointerCancel={() => (drag.current = null)}
+      onPointerUp={letGo}
+      onPointerCancel={letGo}
     >
       <Svg width={widthPx} height={heightPx} aria-hidden pointerEvents="none">
         <Rect x={0} y={0} width={widthPx} height={heightPx} fill={color.sheet} />

@@ -105,7 +105,12 @@ export function DropTape({ tape, zone, nowMs, headName, onOpen }: DropTapeProps)
   const sentence = tapeSentence(tape, zone, nowMs);
   return (
     <div className="tape">
-      <div ref={scroller} className="tape-scroll">
+      <div
+        ref={scroller}
+        className="tape-scroll"
+        // What scrolls can be scrolled by the keyboard too.
+        {...(model.widthPx > widthPx ? { role: 'region', tabIndex: 0, 'aria-label': 'Tape of today' } : {})}
+      >
         <div role="img" aria-label={`Today's portions: ${sentence}.`} style={{ width: model.widthPx }}>
           {widthPx > 0 &&
             model.lines.map((line) => (

@@ -1,6 +1,6 @@
 import type { DoseInput, DoseMarks } from './dose-bars.ts';
 import { doseMarks } from './dose-bars.ts';
-import type { TestMarks, TestsInput } from './test-marks.ts';
+import type { TestMarks, TestPoint, TestsInput } from './test-marks.ts';
 import { testMarks } from './test-marks.ts';
 import type { TimeRange } from './time-axis.ts';
 import { timeScale } from './time-axis.ts';
@@ -76,7 +76,7 @@ export interface LaneModel {
 /** Room for the values at the left, the same in every lane so that their times line up. */
 const gutterRem = 3;
 const edgePx = { top: 8, right: 8, bottom: 8 };
-const remPerTimeTick = 5.25;
+const remPerTimeTick = 4.4;
 const remPerValueTick = 2.3;
 /** A lane holds no more: the fourth line in one colour cannot be told from the others. */
 const mostTraces = 3;
@@ -103,9 +103,23 @@ function isSeen(tMs: number, range: TimeRange): boolean {
   return tMs >= range.fromMs && tMs <= range.toMs;
 }
 
+/** Tests in the range and their neighbours on both sides, whose lines cross it. */
+function testsInSight(points: readonly TestPoint[], range: TimeRange): TestPoint[] {
+  const before = points
+    .filter((point) => point.tMs < range.fromMs)
+    .reduce<TestPoint | null>((last, one) => (last && last.tMs > one.tMs ? last : one), null);
+  const after = points
+    .filter((point) => point.tMs > range.toMs)
+    .reduce<TestPoint | null>((first, one) => (first && first.tMs < one.tMs ? first : one), null);
+  const isCrossed = before !== null && after !== null && !before.below && !after.below;
+  const seen = points.filter((point) => isSeen(point.tMs, range));
+  const neighbours = [before, after].filter((point) => point !== null && (seen.length > 0 || isCrossed));
+  return [...seen, ...neighbours.filter((point) => point !== null)];
+}
+
 /** What the value axis has to reach: everything in sight, the band and the limits. */
 function valuesInSight(lane: LaneInput, range: TimeRange): number[] {
-  const tests = lane.tests?.points.filter((point) => isSeen(point.tMs, range)) ?? [];
+  const tests = testsInSight(lane.tests?.points ?? [], range);
   const columns = lane.doses?.columns.filter((column) => column.toMs >= range.fromMs && column.fromMs < range.toMs) ?? [];
   const steps =
     lane.doses?.steps.filter((step, i, all) => step.fromMs < range.toMs && (all[i + 1]?.fromMs ?? Infinity) > range.fromMs) ?? [];

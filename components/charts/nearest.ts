@@ -59,11 +59,11 @@ function nearestTest(points: readonly TestPoint[], tMs: number): TestPoint | nul
 }
 
 function traceText(columns: Columns, i: number, lane: LaneInput): string {
-  const mean = formatNumber(columns.mean[i] ?? 0, lane.decimals);
-  if (columns.resolutionMs === 0) return `${mean} ${lane.unit}`;
+  const mean = `${formatNumber(columns.mean[i] ?? 0, lane.decimals)} ${lane.unit}`.trim();
+  if (columns.resolutionMs === 0) return mean;
   const low = formatNumber(columns.min[i] ?? 0, lane.decimals);
   const high = formatNumber(columns.max[i] ?? 0, lane.decimals);
-  return low === high ? `${mean} ${lane.unit}` : `${mean} ${lane.unit} (${low} to ${high})`;
+  return low === high ? mean : `${mean} (${low} to ${high})`;
 }
 
 function doseText(lane: LaneInput, tMs: number, nearMs: number): { text: string; tMs: number | null } | null {

@@ -10,6 +10,8 @@ export interface GestureTarget {
   readonly plotWidthPx: number;
   readonly onRange: (range: TimeRange) => void;
   readonly onCrosshair: (tMs: number) => void;
+  /** A drag began or ended: until then nothing is asked of the server. */
+  readonly onHold: (isHeld: boolean) => void;
 }
 
 /** A press that moved no further, in pixels, is a tap. */
@@ -90,6 +92,7 @@ export function useChartGestures(surface: RefObject<HTMLElement | null>, target:
       finger.y = event.clientY;
       if (Math.hypot(finger.x - finger.startX, finger.y - finger.startY) > tapSlopPx && !didMove) {
         didMove = true;
+        latest.current.onHold(true);
         // From here on the drag is the chart's, also when it leaves the surface.
         element.setPointerCapture(event.pointerId);
       }
@@ -106,11 +109,13 @@ export function useChartGestures(surface: RefObject<HTMLElement | null>, target:
     const onUp = (event: PointerEvent) => {
       if (!fingers.delete(event.pointerId)) return;
       if (fingers.size === 0 && !didMove) latest.current.onCrosshair(timeAt(event.clientX));
+      if (fingers.size === 0) latest.current.onHold(false);
       restart();
     };
     const onCancel = (event: PointerEvent) => {
       fingers.delete(event.pointerId);
       didMove = true;
+      if (fingers.size === 0) latest.current.onHold(false);
       restart();
     };
     const onWheel = (event: WheelEvent) => {

@@ -13,6 +13,7 @@ import { readLanes } from '../charts/nearest.ts';
 import { presets } from '../charts/presets.ts';
 import { spanOf } from '../charts/time-axis.ts';
 import { Button } from '../ui/button.tsx';
+import { Checkbox } from '../ui/checkbox.tsx';
 import { Heading } from '../ui/heading.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Screen } from '../ui/screen.tsx';
@@ -64,7 +65,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
   const [sheet, setSheet] = useState<{ readonly testId: string | null } | null>(null);
 
   const earliestTestMs = useMemo(() => Math.min(...(tests.data ?? []).map((test) => Date.parse(test.at)), Infinity), [tests.data]);
-  const { view, settledRange, limits, preset, nowMs, onView, choosePreset } = useOverlayView(earliestTestMs);
+  const { view, settledRange, limits, preset, nowMs, onView, onHold, choosePreset } = useOverlayView(earliestTestMs);
 
   const groups = useMemo(() => groupProbes(series.data ?? []), [series.data]);
   // On a phone one probe stands open, the others are a press away.
@@ -77,22 +78,26 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
   const lanes = useMemo(() => [...nutrients, dose, ...probes], [nutrients, dose, probes]);
 
   const { crosshairMs } = view;
+  const isCrosshairSeen = crosshairMs !== null && crosshairMs >= view.range.fromMs && crosshairMs <= view.range.toMs;
   const nearMs = spanOf(view.range) / 100;
-  const readings = useMemo(() => (crosshairMs === null ? [] : readLanes(lanes, crosshairMs, nearMs)), [lanes, crosshairMs, nearMs]);
+  const readings = useMemo(
+    () => (isCrosshairSeen ? readLanes(lanes, crosshairMs, nearMs) : []),
+    [lanes, isCrosshairSeen, crosshairMs, nearMs],
+  );
   const whole = { fromMs: limits.earliestMs, toMs: nowMs };
   const mayLog = renderTestSheet !== undefined && isAtLeast(system.role, 'sitter');
 
   // On a phone the tab says where one is, and the room is for the lanes.
   const title = <Heading level={1}>Overlay</Heading>;
-  const readout =
-    crosshairMs === null ? null : (
-      <OverlayReadout
-        crosshairMs={crosshairMs}
-        readings={readings}
-        zone={zone}
-        onEditTest={mayLog ? (testId) => setSheet({ testId }) : undefined}
-      />
-    );
+  const logButton = mayLog ? <Button onPress={() => setSheet({ testId: null })}>Write down a test</Button> : null;
+  const readout = !isCrosshairSeen ? null : (
+    <OverlayReadout
+      crosshairMs={crosshairMs}
+      readings={readings}
+      zone={zone}
+      onEditTest={mayLog ? (testId) => setSheet({ testId }) : undefined}
+    />
+  );
   return (
     <Screen wide footer={readout}>
       {isPhone ? <VisuallyHidden>{title}</VisuallyHidden> : title}
@@ -100,7 +105,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
         <Text variant={isPhone ? 'sentence' : 'sentenceWide'}>
           {rangeSentence(preset?.words ?? null, settledRange, zone, nutrients, dose)}
         </Text>
-        {mayLog && <Button onPress={() => setSheet({ testId: null })}>Write down a test</Button>}
+        {!isPhone && logButton}
       </div>
       {[tests.error, series.error, error]
         .filter((one) => one !== null)
@@ -126,6 +131,7 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
         readings={readings}
         tokens={tokens}
         onView={onView}
+        onHold={onHold}
       />
       <ContextStrip
         whole={whole}
@@ -137,19 +143,27 @@ function Overlay({ system, systemId, renderTestSheet }: OverlayScreenProps & { s
           times: (lane.tests?.points ?? []).map((point) => point.tMs),
         }))}
         onRange={(range) => onView({ range, crosshairMs })}
+        onHold={onHold}
       />
       {groups.length > 0 && (
-        <div className="overlay-folded" role="group" aria-label="Lanes of probes">
+        <div className="overlay-folded" role="group" aria-labelledby="overlay-probes">
+          <Heading level={2} id="overlay-probes" variant="label">
+            Probes shown
+          </Heading>
           {groups.map((group, i) => {
             const isShown = isOpen(group.id, group.folded, i);
             return (
-              <Button key={group.id} expanded={isShown} onPress={() => setUnfolded(new Map(unfolded).set(group.id, !isShown))}>
-                {`${isShown ? 'Hide' : 'Show'} ${group.title}`}
-              </Button>
+              <Checkbox
+                key={group.id}
+                label={group.title}
+                checked={isShown}
+                onChange={() => setUnfolded(new Map(unfolded).set(group.id, !isShown))}
+              />
             );
           })}
         </div>
       )}
+      {isPhone && logButton}
       {sheet !== null && renderTestSheet?.(sheet.testId, () => setSheet(null))}
     </Screen>
   );

@@ -5,10 +5,9 @@ import { useHandDoses } from '../../hooks/use-records.ts';
 import { useRunsBetween } from '../../hooks/use-runs-between.ts';
 import { useDoses } from '../../hooks/use-telemetry.ts';
 import type { LaneInput } from '../charts/lane-model.ts';
-import { mostPointsPerSeries } from '../charts/trace-model.ts';
 import type { TimeRange } from '../charts/time-axis.ts';
 import { doseLane, showsPortions } from './dose-lane.ts';
-import { fetchWindow } from './fetch-window.ts';
+import { fetchWindow, pointCount } from './fetch-window.ts';
 import { nutrientLane } from './nutrient-lane.ts';
 import { probeLane, type ProbeGroup } from './probe-lanes.ts';
 
@@ -39,7 +38,7 @@ export function useOverlayLanes(
   const handDoses = useHandDoses(systemId);
   const { runs } = useRunsBetween(systemId, window, isNear);
   const seriesIds = useMemo(() => groups.flatMap((group) => group.series.map((series) => series.id)), [groups]);
-  const points = useManyPoints(systemId, seriesIds, window, mostPointsPerSeries);
+  const points = useManyPoints(systemId, seriesIds, window, pointCount(range));
 
   const nutrients = useMemo(() => [nutrientLane('nitrate', tests), nutrientLane('phosphate', tests)], [tests]);
   const dose = useMemo(

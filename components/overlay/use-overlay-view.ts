@@ -22,6 +22,7 @@ export interface OverlayView {
   readonly preset: Preset | null;
   readonly nowMs: number;
   readonly onView: (view: ChartView) => void;
+  readonly onHold: (isHeld: boolean) => void;
   readonly choosePreset: (preset: Preset) => void;
 }
 
@@ -35,7 +36,8 @@ export function useOverlayView(earliestMs: number): OverlayView {
     [earliestMs, nowMs],
   );
   const range = useMemo(() => ('range' in shown ? shown.range : presetRange(shown.preset, nowMs)), [shown, nowMs]);
-  const settledRange = useSettled(range, settleMs);
+  const [isHeld, setIsHeld] = useState(false);
+  const settledRange = useSettled(range, settleMs, isHeld);
   const onView = useCallback(
     (next: ChartView) => {
       setCrosshairMs(next.crosshairMs);
@@ -47,5 +49,5 @@ export function useOverlayView(earliestMs: number): OverlayView {
   );
   const choosePreset = useCallback((preset: Preset) => setShown({ preset }), []);
   const view = useMemo(() => ({ range, crosshairMs }), [range, crosshairMs]);
-  return { view, settledRange, limits, preset: 'preset' in shown ? shown.preset : null, nowMs, onView, choosePreset };
+  return { view, settledRange, limits, preset: 'preset' in shown ? shown.preset : null, nowMs, onView, onHold: setIsHeld, choosePreset };
 }

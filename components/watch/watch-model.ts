@@ -1,4 +1,4 @@
-import type { Series, Tape } from '#shared/contract/telemetry.ts';
+import { quantities, type Series, type Tape } from '#shared/contract/telemetry.ts';
 import type { Reservoir } from '#shared/contract/rig.ts';
 import type { System, SystemStatus } from '#shared/contract/systems.ts';
 import { formatMl, formatMlOf } from '../../lib/format/millilitres.ts';
@@ -71,8 +71,14 @@ export interface ProbeRow {
 /** A probe that reports each 5 minutes has missed one report. */
 const oldProbeMs = 10 * minuteMs;
 
+/** In the order in which quantities are known, those that nobody named last; it never changes with the values. */
+function byQuantity(a: Series, b: Series): number {
+  const place = (one: Series) => (one.quantity === null ? quantities.length : quantities.indexOf(one.quantity));
+  return place(a) - place(b) || a.channel.localeCompare(b.channel);
+}
+
 export function probeRows(series: readonly Series[], timeZone: string, nowMs: number): ProbeRow[] {
-  return series.map((one) => ({
+  return [...series].sort(byQuantity).map((one) => ({
     id: one.id,
     name: seriesName(one),
     value: formatSeriesValue(one, one.lastValue),

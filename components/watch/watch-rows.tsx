@@ -43,14 +43,11 @@ export function BottleRows({ rows }: { rows: readonly BottleRow[] }) {
 /** Each figure with its age; one that is old goes soft. */
 export function ProbeRows({ rows }: { rows: readonly ProbeRow[] }) {
   return (
-    <ul className="watch-rows">
+    <ul className="watch-rows watch-rows-short">
       {rows.map((row) => (
         <li key={row.id}>
-          <Text bold>{row.name}</Text>
-          <Text figures soft={row.isOld}>
-            {row.value}
-          </Text>
-          <span className="watch-row-word">
+          <span className="watch-row-name">
+            <Text bold>{row.name}</Text>
             {row.isOld ? (
               <StateWord mark="unknown">{row.age === 'never heard' ? row.age : `as of ${row.age}`}</StateWord>
             ) : (
@@ -59,6 +56,9 @@ export function ProbeRows({ rows }: { rows: readonly ProbeRow[] }) {
               </Text>
             )}
           </span>
+          <Text figures soft={row.isOld}>
+            {row.value}
+          </Text>
         </li>
       ))}
     </ul>

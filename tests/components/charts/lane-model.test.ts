@@ -75,6 +75,10 @@ describe('laneModel', () => {
     const outside = laneModel({ ...empty, tests: { shape: 'circle', dashed: false, points: [test('a', fromMs - dayMs, 500)] } }, frame);
     expect(outside.values.high).toBeLessThan(10);
   });
+  it('reaches the line between two tests that lie on both sides of the range', () => {
+    const points = [test('a', fromMs - dayMs, 24), test('b', fromMs + 11 * dayMs, 22)];
+    expect(laneModel({ ...empty, tests: { shape: 'circle', dashed: false, points } }, frame).values.high).toBeGreaterThanOrEqual(24);
+  });
   it('draws at most three series in a lane', () => {
     const trace = (id: string) => ({ id, label: id, dashed: false, columns: columns([fromMs], [5]) });
     expect(laneModel({ ...empty, traces: ['a', 'b', 'c', 'd'].map(trace) }, frame).traces.map((one) => one.id)).toEqual(['a', 'b', 'c']);
