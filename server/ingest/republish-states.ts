@@ -6,7 +6,7 @@ import type { Reader } from '../db/open.ts';
  * The embedded broker keeps retained messages in memory only, so what each device last said of itself is published
  * again from its row when the server starts. Not for an external broker, which has kept the device's own words.
  */
-export async function republishStates(reader: Reader, broker: Broker): Promise<void> {
+export async function republishStates(reader: Reader, broker: Pick<Broker, 'publish'>): Promise<void> {
   const rows = await reader.selectFrom('deviceState').selectAll().execute();
   for (const row of rows) {
     const heads: unknown = JSON.parse(row.heads);
