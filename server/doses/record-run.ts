@@ -66,7 +66,8 @@ function merge(
     begunReceivedMs: before?.begunReceivedMs ?? (payload.phase === 'begun' ? receivedMs : null),
     endedMs: endedMs === null ? null : Math.max(endedMs, begunMs),
     ml: Math.max(before?.ml ?? 0, payload.ml),
-    onMs: payload.onMs === undefined ? (before?.onMs ?? null) : Math.max(before?.onMs ?? 0, Math.round(payload.onMs)),
+    // No motor ran for longer than time goes: a number that no column holds must not cost the dose.
+    onMs: payload.onMs === undefined ? (before?.onMs ?? null) : Math.max(before?.onMs ?? 0, Math.min(Math.round(payload.onMs), LATEST_MS)),
     odometerMl: (isFarthest ? payload.odometerMl : undefined) ?? before?.odometerMl ?? payload.odometerMl ?? null,
     odometerEpoch: (isFarthest ? payload.odometerEpoch : undefined) ?? before?.odometerEpoch ?? payload.odometerEpoch ?? null,
     interrupted,

@@ -65,7 +65,9 @@ export async function dispatchOrders({ core, publisher, takeReturned, onSettled 
 
   async function sendStop(order: OrderRow): Promise<void> {
     if (!publisher.isConnected(order.deviceId)) return;
-    if (order.nextSendMs > nowMs && !returned.has(order.deviceId)) return;
+    // A turn that is further off than any can be was set before the clock was put back.
+    const isItsTurn = order.nextSendMs <= nowMs || order.nextSendMs > nowMs + STOP_EVERY_MS;
+    if (!isItsTurn && !returned.has(order.deviceId)) return;
     send(order);
     await writer.commit((tx) => tx.run(countAttempt(order)));
   }

@@ -2,6 +2,7 @@ import { type ReceiptPayload, UNSET_CLOCK_BELOW_MS } from '#shared/mqtt/payloads
 import { systemActor } from '../audit/record-audit.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
+import { LATEST_MS } from '../ingest/plausible-time.ts';
 import { type OrderRow, orderStop, settleOrder } from './insert-order.ts';
 import { openStop } from './open-stop.ts';
 
@@ -16,7 +17,8 @@ export function receiveReceipt(tx: Transaction, deviceId: string, receipt: Recei
   if (order === undefined) return null;
   const { outcome } = receipt;
   if (order.state === 'waiting') {
-    const atMs = receipt.atMs < UNSET_CLOCK_BELOW_MS ? receivedMs : receipt.atMs;
+    const isClockSet = receipt.atMs >= UNSET_CLOCK_BELOW_MS && receipt.atMs < LATEST_MS;
+    const atMs = isClockSet ? receipt.atMs : receivedMs;
     settleOrder(tx, order.id, { state: outcome, why: receipt.why ?? null, atMs });
     return { ...order, state: outcome, why: receipt.why ?? null, outcomeAtMs: atMs };
   }

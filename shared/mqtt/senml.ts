@@ -58,7 +58,7 @@ function hasInfinity(pack: unknown[]): boolean {
     (record) =>
       typeof record === 'object' &&
       record !== null &&
-      Object.values(record).some((field) => Math.abs(Number(field)) === Infinity && typeof field === 'number'),
+      Object.values(record).some((field) => typeof field === 'number' && Math.abs(field) === Infinity),
   );
 }
 

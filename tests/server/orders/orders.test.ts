@@ -48,6 +48,14 @@ describe('the outbox', () => {
     expect(sent()).toHaveLength(1);
   });
 
+  it('goes on sending a stop when the clock of the server was set back', async () => {
+    await add({});
+    await scene.orders.dispatch();
+    scene.clock.advance(-3_600_000);
+    await scene.orders.dispatch();
+    expect(sent()).toHaveLength(2);
+  });
+
   it('does not keep what starts a motor for a pump that is away', async () => {
     scene.publisher.connected.clear();
     const id = await add({ do: 'dose', args: { ml: 0.5 } });
@@ -88,6 +96,13 @@ describe('a receipt', () => {
     scene.clock.advance(1_000);
     await scene.receipt(scene.device.id, { order: id, outcome: 'done' });
     expect(await scene.order(id)).toMatchObject({ state: 'refused', why: 'busy', outcomeAtMs: scene.clock.nowMs() - 1_000 });
+  });
+
+  it.each([1e300, 9e15])('takes its arrival for a time that is no date: %d', async (atMs) => {
+    await scene.addHead({ head: 1 });
+    const id = await add({});
+    await scene.receipt(scene.device.id, { order: id, outcome: 'done', atMs });
+    expect(await scene.orders.list(scene.systemId)).toMatchObject([{ id, outcome: 'done', at: '2026-03-01T12:00:00.000Z' }]);
   });
 
   it('for the order of another pump, or for none, changes nothing', async () => {
