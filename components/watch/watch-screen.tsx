@@ -1,4 +1,4 @@
-import { useMemo, useState } from 'react';
+import { useState } from 'react';
 import { isAtLeast } from '#shared/domain/role.ts';
 import type { System } from '#shared/contract/systems.ts';
 import { useAlarmRules } from '../../hooks/use-alarms.ts';
@@ -6,15 +6,12 @@ import { useBreakpoint } from '../../hooks/use-breakpoint.ts';
 import { useFreshness } from '../../hooks/use-freshness.ts';
 import { useNow } from '../../hooks/use-now.ts';
 import { useHandDoses } from '../../hooks/use-records.ts';
-import { useHeads, useReservoirs } from '../../hooks/use-rig.ts';
+import { useReservoirs } from '../../hooks/use-rig.ts';
 import { useSystem } from '../../hooks/use-systems.ts';
-import { useRuns, useSeries, useTape } from '../../hooks/use-telemetry.ts';
+import { useSeries } from '../../hooks/use-telemetry.ts';
 import { useTitle } from '../../hooks/use-title.ts';
 import { formatNear } from '../../lib/format/time.ts';
 import { systemSentence } from '../../lib/sentences/system-sentence.ts';
-import { DropTape } from '../charts/drop-tape.tsx';
-import type { TapeItem } from '../charts/drop-tape-model.ts';
-import { Button } from '../ui/button.tsx';
 import { EmptyState } from '../ui/empty-state.tsx';
 import { Heading } from '../ui/heading.tsx';
 import { LiveRegion } from '../ui/live-region.tsx';
@@ -25,9 +22,9 @@ import { Text } from '../ui/text.tsx';
 import { VisuallyHidden } from '../ui/visually-hidden.tsx';
 import { FirstMinutes } from './first-minutes.tsx';
 import { HandDoseSheet } from './hand-dose-sheet.tsx';
-import { PortionSheet } from './portion-sheet.tsx';
+import { TodayPart } from './today-part.tsx';
 import './watch.css';
-import { bottleRows, dueLines, firstChecklist, heardAtMs, heardWords, nutrientRows, probeRows, todayFigure } from './watch-model.ts';
+import { bottleRows, dueLines, firstChecklist, heardAtMs, heardWords, nutrientRows, probeRows } from './watch-model.ts';
 import { BottleRows, DueLines, NutrientRows, ProbeRows } from './watch-rows.tsx';
 
 /** The system now. */
@@ -135,69 +132,5 @@ function Watch({ system }: { system: System }) {
         />
       )}
     </Screen>
-  );
-}
-
-interface TodayPartProps {
-  system: System;
-  nowMs: number;
-  isStale: boolean;
-  /** Null for who may not write doses down. */
-  onHandDose: (() => void) | null;
-}
-
-/** Today's one figure, and the tape. */
-function TodayPart({ system, nowMs, isStale, onHandDose }: TodayPartProps) {
-  const tape = useTape(system.id);
-  const heads = useHeads(system.id);
-  const runs = useRuns(system.id);
-  const [opened, setOpened] = useState<TapeItem | null>(null);
-  const { figure, note } = todayFigure(system.status, tape.data);
-  const headNames = useMemo(
-    () => new Map((heads.data ?? []).map((head) => [`${head.deviceId} ${head.head}`, `${head.deviceName}, head ${head.head}`])),
-    [heads.data],
-  );
-  const headName = (deviceId: string | null, head: number | null) =>
-    head === null ? 'by hand' : (headNames.get(`${deviceId ?? ''} ${head}`) ?? `head ${head}`);
-  // The now-line moves by a pixel in minutes; the tape is not laid out each second.
-  const minuteMs = Math.floor(nowMs / 60_000) * 60_000;
-  const run = opened === null ? null : (runs.data?.find((one) => one.id === opened.runId && one.deviceId === opened.deviceId) ?? null);
-  return (
-    <section className="watch-section" aria-labelledby="watch-today">
-      <div className="watch-section-head">
-        <Heading level={2} id="watch-today" variant="label">
-          Carbon today
-        </Heading>
-        {onHandDose !== null && (
-          <Button kind="quiet" onPress={onHandDose}>
-            Dose by hand
-          </Button>
-        )}
-      </div>
-      <div className="watch-figure">
-        <Text variant="figure" soft={isStale}>
-          {figure}
-        </Text>
-        <Text soft>{note}</Text>
-      </div>
-      {tape.isError ? <Notice error={tape.error} onRetry={() => void tape.refetch()} /> : null}
-      {tape.data === undefined ? (
-        tape.isError ? null : (
-          <Skeleton lines={2} lineHeight={36} name="Loading the tape" />
-        )
-      ) : (
-        <DropTape tape={tape.data} zone={system.timeZone} nowMs={minuteMs} headName={headName} onOpen={setOpened} />
-      )}
-      {opened !== null && (
-        <PortionSheet
-          item={opened}
-          run={run}
-          system={system}
-          nowMs={nowMs}
-          headName={headName(opened.deviceId, opened.head)}
-          onClose={() => setOpened(null)}
-        />
-      )}
-    </section>
   );
 }
