@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { expect, it } from 'vitest';
 import { createFrameScanner } from '../../broker/frame-scanner.ts';
 import { connectFrame, publishFrame } from '../helpers/raw-mqtt.ts';
