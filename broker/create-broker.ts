@@ -57,6 +57,8 @@ export async function createBroker(options: BrokerOptions): Promise<Broker> {
   const asked = new WeakMap<Client, ConnectPacket>();
   const buckets = new Map<string, TokenBucket>();
   const revocations = new Map<string, number>();
+  /** How often the device's password had been withdrawn when this client gave it. */
+  const signedInAfter = new WeakMap<Client, number | undefined>();
   const receiving = new Set<Promise<void>>();
   let isStopping = false;
 
@@ -95,6 +97,7 @@ export async function createBroker(options: BrokerOptions): Promise<Broker> {
     if (will !== undefined && publishableWord(username, client.id, will.topic) === null) {
       throw refusal(5, `the last will goes to ${will.topic}, outside the device's topics`);
     }
+    signedInAfter.set(client, revocations.get(username));
     connections.signIn(username, client);
   }
 
@@ -118,6 +121,8 @@ export async function createBroker(options: BrokerOptions): Promise<Broker> {
     drainTimeout: limits.drainTimeoutMs,
     maxTopicLevels: 8,
     preConnect(client, packet, done) {
+      // Sessions are kept in memory and never expire: of a device only the main one is, or ever new names would fill it.
+      if (packet.clientId !== packet.username) packet.clean = true;
       asked.set(client, packet);
       done(null, !isStopping);
     },
@@ -160,6 +165,11 @@ export async function createBroker(options: BrokerOptions): Promise<Broker> {
     const deviceId = connections.deviceOf(client);
     const { conn } = client;
     if (connack.returnCode !== 0 || deviceId === undefined || !(conn instanceof GuardedConnection) || conn.destroyed) return;
+    // The password was withdrawn after it was checked, when this client could not yet be found among the open ones.
+    if (signedInAfter.get(client) !== revocations.get(deviceId)) {
+      conn.destroy();
+      return;
+    }
     conn.once('close', () => {
       if (connections.close(client)) tell('disconnected', () => policy.disconnected(deviceId));
     });
