@@ -82,11 +82,9 @@ export function LogTests({
         />
       ))}
       {at === null ? (
-        <div>
-          <Button kind="quiet" onPress={() => setAt(localTime(Date.now(), timeZone))}>
-            Tested now; change the time
-          </Button>
-        </div>
+        <Button kind="quiet" onPress={() => setAt(localTime(Date.now(), timeZone))}>
+          Tested now; change the time
+        </Button>
       ) : (
         <Field label="Tested at" type="datetime-local" value={at} onChange={setAt} error={errors.at ?? null} />
       )}

@@ -27,7 +27,7 @@ export function ResultInput({
   const last = tests.find((test) => test.quantity === quantity);
   const name = quantityNames[quantity];
   return (
-    <div style={{ display: 'flex', flexDirection: 'column', gap: 8 }}>
+    <div className="field-group">
       <Stepper
         label={name}
         unit={draft.unit}
@@ -55,11 +55,9 @@ export function ResultInput({
           />
         </>
       ) : (
-        <div>
-          <Button kind="quiet" name={`${name}: unit or below detection`} onPress={() => setMore(true)}>
-            Unit or below detection
-          </Button>
-        </div>
+        <Button kind="quiet" name={`Unit or below detection of ${name.toLowerCase()}`} onPress={() => setMore(true)}>
+          Unit or below detection
+        </Button>
       )}
     </div>
   );

@@ -1,5 +1,5 @@
 import type { Test, TestQuantity } from '#shared/contract/records.ts';
-import { formatNumber, decimalsFor } from '../../lib/format/number.ts';
+import { formatNumber } from '../../lib/format/number.ts';
 import { defaultBands, placeInBand, type Nutrient } from '../../lib/format/nutrient.ts';
 
 export const quantityNames: Record<TestQuantity, string> = {
@@ -16,10 +16,13 @@ export function isNutrient(quantity: TestQuantity): quantity is Nutrient {
 
 /** As it was written down: `under 0.02 mg/L PO4`, never more digits than were given. */
 export function resultWords(test: Pick<Test, 'value' | 'unit' | 'below'>): string {
-  const figure = Number.isInteger(test.value)
-    ? String(test.value)
-    : formatNumber(test.value, Math.max(decimalsFor(test.value), decimalsOf(test.value)));
+  const figure = formatNumber(test.value, decimalsOf(test.value));
   return `${test.below ? 'under ' : ''}${figure} ${test.unit}`;
+}
+
+/** One test in words: `Nitrate 22 mg/L NO3`, and that it was corrected. */
+export function testWords(test: Pick<Test, 'quantity' | 'value' | 'unit' | 'below' | 'edited'>): string {
+  return `${quantityNames[test.quantity]} ${resultWords(test)}${test.edited ? ' (corrected)' : ''}`;
 }
 
 function decimalsOf(value: number): number {

@@ -19,7 +19,8 @@ import { UndoBar } from '../ui/undo-bar.tsx';
 import { EditTest } from './edit-test.tsx';
 import { LogTests } from './log-tests.tsx';
 import { quantityNames, resultWords } from './result-words.ts';
-import { TestsList } from './tests-list.tsx';
+import { TestsByDay } from './tests-by-day.tsx';
+import { TestsTable } from './tests-table.tsx';
 
 /** Tests by hand: write both down, look back, correct, take out with a way back. `startOpen` opens the sheet at once. */
 export function TestsScreen({ systemId, startOpen = false }: { systemId: string; startOpen?: boolean }) {
@@ -82,12 +83,14 @@ export function TestsScreen({ systemId, startOpen = false }: { systemId: string;
       {tests.data?.length === 0 ? (
         <EmptyState sentence="No test yet. Write down nitrate and phosphate of the same day: everything starts from them." />
       ) : null}
-      {list.length === 0 ? null : (
-        <TestsList
+      {isWide || list.length === 0 ? null : (
+        <TestsByDay tests={list} timeZone={timeZone} nowMs={nowMs} mayOpen={mayCorrect} onOpen={setOpened} />
+      )}
+      {!isWide || list.length === 0 ? null : (
+        <TestsTable
           tests={list}
           timeZone={timeZone}
           nowMs={nowMs}
-          isWide={isWide}
           onOpen={
             mayWrite
               ? (test) => (mayCorrect(test) ? setOpened(test) : setSaid('Only a keeper corrects what somebody else wrote down.'))

@@ -6,7 +6,7 @@ export function Form({ children, onSubmit, name }: { children: ReactNode; onSubm
     <form
       noValidate
       aria-label={name}
-      style={{ display: 'flex', flexDirection: 'column', gap: 16 }}
+      className="form"
       onSubmit={(event) => {
         event.preventDefault();
         onSubmit();

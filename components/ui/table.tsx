@@ -12,6 +12,8 @@ export interface Column<Row> {
 
 export interface TableProps<Row> {
   caption: string;
+  /** For a screen reader only, where a heading says the same. */
+  hideCaption?: boolean;
   columns: readonly Column<Row>[];
   rows: readonly Row[];
   rowKey: (row: Row) => string;
@@ -28,7 +30,7 @@ function compare(a: number | string, b: number | string): number {
 }
 
 /** A real table. It keeps the order of `rows` until a person sorts it by a column. */
-export function Table<Row>({ caption, columns, rows, rowKey, onOpen, openName, selectedKey }: TableProps<Row>) {
+export function Table<Row>({ caption, hideCaption, columns, rows, rowKey, onOpen, openName, selectedKey }: TableProps<Row>) {
   const [sorting, setSorting] = useState<Sorting>(null);
   const sorted = useMemo(() => {
     const sortBy = sorting === null ? undefined : columns.find((column) => column.key === sorting.key)?.sortBy;
@@ -40,7 +42,7 @@ export function Table<Row>({ caption, columns, rows, rowKey, onOpen, openName, s
   return (
     <div className="table-frame" role="region" aria-label={caption} tabIndex={0}>
       <table className="table">
-        <caption>{caption}</caption>
+        <caption className={hideCaption === true ? 'visually-hidden' : undefined}>{caption}</caption>
         <thead>
           <tr>
             {columns.map((column) => (

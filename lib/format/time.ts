@@ -30,6 +30,14 @@ export function formatDayAndClock(time: number | string, timeZone: string, nowMs
   return `${formatDay(time, timeZone, nowMs)}, ${formatClock(time, timeZone)}`;
 }
 
+/** A day as the title of what happened on it: `Today`, `Yesterday`, else `Tuesday 24 November`, with the year when it is not the current one. */
+export function formatDayTitle(time: number | string, timeZone: string, nowMs: number): string {
+  const day = inZone(time, timeZone).startOf('day');
+  const daysAgo = inZone(nowMs, timeZone).startOf('day').diff(day, 'days').days;
+  if (daysAgo === 0) return 'Today';
+  return daysAgo === 1 ? 'Yesterday' : `${day.toFormat('cccc')} ${formatDay(time, timeZone, nowMs)}`;
+}
+
 /** `14:02` today, `Sunday 14:02` within the last or next six days, else `9 March, 14:02`. */
 export function formatNear(time: number | string, timeZone: string, nowMs: number): string {
   const at = inZone(time, timeZone);
