@@ -163,5 +163,14 @@ export function writeFrame(client: QueryClient, frame: LiveFrame): void {
 
 /** What came in between is lost: everything on the screen is asked for again, the rest when it is next shown. */
 export function refetchAll(client: QueryClient): void {
+  const unanswered = client
+    .getQueryCache()
+    .findAll({ fetchStatus: 'fetching' })
+    .filter((query) => query.state.data === undefined);
   void client.invalidateQueries();
+  for (const query of unanswered) {
+    // A first answer that is on its way may have left the server before the stream opened. A failure is in the query's own state.
+    const again = () => client.invalidateQueries({ queryKey: query.queryKey, exact: true });
+    query.promise?.then(again, () => undefined);
+  }
 }

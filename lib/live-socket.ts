@@ -6,7 +6,7 @@ export interface LiveSocketParts {
   askTicket: () => Promise<string | null>;
   openSocket: (address: string) => WebSocket;
   onFrame: (frame: LiveFrame) => void;
-  /** Frames in between are no longer kept, or this stream starts anew after others changed data: refetch. */
+  /** Frames in between are no longer kept, or this stream starts without a frame to go on from: refetch. */
   onGap: () => void;
   onStatus: (open: boolean) => void;
   onRoleLost: () => void;
@@ -21,7 +21,6 @@ export function openLiveSocket(parts: LiveSocketParts): { close(): void; retryNo
   let lastSeq: number | null = null;
   let attempt = 0;
   let timer: ReturnType<typeof setTimeout> | null = null;
-  let wasOpen = false;
 
   function later(): void {
     if (closed || timer !== null) return;
@@ -63,9 +62,8 @@ export function openLiveSocket(parts: LiveSocketParts): { close(): void; retryNo
     opened.onopen = () => {
       attempt = 0;
       parts.onStatus(true);
-      // Without a sequence number there is nothing to resume from: what changed since the first fetch may be missing.
-      if (wasOpen && lastSeq === null) parts.onGap();
-      wasOpen = true;
+      // With nothing to resume from, what changed between the first fetch and now came to nobody.
+      if (lastSeq === null) parts.onGap();
     };
     opened.onmessage = receive;
     opened.onclose = (event) => {

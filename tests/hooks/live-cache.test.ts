@@ -1,8 +1,8 @@
-import { QueryClient } from '@tanstack/react-query';
+import { QueryClient, QueryObserver } from '@tanstack/react-query';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import type { LiveFrame } from '#shared/contract/live.ts';
 import { keys } from '../../hooks/keys.ts';
-import { pointsWithSamples, tapeWithRun, writeFrame } from '../../hooks/live-cache.ts';
+import { pointsWithSamples, refetchAll, tapeWithRun, writeFrame } from '../../hooks/live-cache.ts';
 import { makeAlarm, makeDevice, makeRun, makeSlot, makeTape, nowMs, testId } from '../helpers/client-fixtures.ts';
 
 const systemId = testId(1);
@@ -145,5 +145,27 @@ describe('other frames', () => {
   it('change nothing that was never asked for', () => {
     writeFrame(client, frame('test', test(1, 0)));
     expect(client.getQueryData(keys.tests(systemId))).toBeUndefined();
+  });
+});
+
+describe('what came in between', () => {
+  it('is asked for again also where the first answer was still on its way', async () => {
+    vi.mocked(client.invalidateQueries).mockRestore();
+    const answers: ((answer: string) => void)[] = [];
+    const observer = new QueryObserver(client, {
+      queryKey: keys.tests(systemId),
+      queryFn: () => new Promise<string>((resolve) => answers.push(resolve)),
+    });
+    const stop = observer.subscribe(() => undefined);
+    refetchAll(client);
+    expect(answers).toHaveLength(1);
+    answers[0]?.('before the change');
+    await vi.advanceTimersByTimeAsync(0);
+    expect(answers).toHaveLength(2);
+    answers[1]?.('with the change');
+    await vi.advanceTimersByTimeAsync(0);
+    expect(client.getQueryData(keys.tests(systemId))).toBe('with the change');
+    expect(answers).toHaveLength(2);
+    stop();
   });
 });

@@ -77,8 +77,19 @@ describe('the live socket', () => {
     expect(heard.status).toHaveBeenLastCalledWith(false);
     await vi.advanceTimersByTimeAsync(500);
     expect(addresses[1]).toBe('ws://127.0.0.1:4000/api/live?ticket=ticket-2&since=7');
+    heard.gap.mockClear();
     last().onopen?.();
     expect(heard.gap).not.toHaveBeenCalled();
+  });
+
+  it('asks for everything anew once the first stream is open, for what changed since the first fetch', async () => {
+    open();
+    await vi.advanceTimersByTimeAsync(0);
+    expect(heard.gap).not.toHaveBeenCalled();
+    last().onopen?.();
+    expect(heard.gap).toHaveBeenCalledTimes(1);
+    last().frame(plan(7));
+    expect(heard.gap).toHaveBeenCalledTimes(1);
   });
 
   it('asks for everything anew when it comes back with nothing to resume from', async () => {
@@ -88,7 +99,7 @@ describe('the live socket', () => {
     last().onclose?.({ code: 1006 });
     await vi.advanceTimersByTimeAsync(500);
     last().onopen?.();
-    expect(heard.gap).toHaveBeenCalledTimes(1);
+    expect(heard.gap).toHaveBeenCalledTimes(2);
   });
 
   it('takes a gap, and a frame that it does not know, as a reason to fetch anew', async () => {
