@@ -2,6 +2,7 @@ import { useEndSession, useSessions } from '../../hooks/use-me.ts';
 import { useNow } from '../../hooks/use-now.ts';
 import { browserWords } from '../../lib/format/browser.ts';
 import { formatAgo } from '../../lib/format/time.ts';
+import { browserTimeZone } from '../../lib/format/time-zones.ts';
 import { Button } from '../ui/button.tsx';
 import { Notice } from '../ui/notice.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
@@ -13,7 +14,7 @@ export function SessionList() {
   const sessions = useSessions();
   const end = useEndSession();
   const nowMs = useNow(30_000);
-  const zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
+  const zone = browserTimeZone();
   return (
     <Section title="Where you are signed in">
       {sessions.isError ? <Notice error={sessions.error} onRetry={() => void sessions.refetch()} /> : null}

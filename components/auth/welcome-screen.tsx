@@ -4,11 +4,13 @@ import { useWelcome, useWelcomeState } from '../../hooks/use-auth.ts';
 import { useSession } from '../../hooks/use-session.ts';
 import { useTitle } from '../../hooks/use-title.ts';
 import { fieldError, isSaidAtFields } from '../../lib/field-errors.ts';
+import { browserTimeZone } from '../../lib/format/time-zones.ts';
 import { Button } from '../ui/button.tsx';
 import { Field } from '../ui/field.tsx';
 import { Form } from '../ui/form.tsx';
 import { LinkText } from '../ui/link-text.tsx';
 import { Notice } from '../ui/notice.tsx';
+import { TimeZoneSelect } from '../ui/time-zone-select.tsx';
 import { AuthPage } from './auth-page.tsx';
 
 /** The first start: the account that owns the first site. */
@@ -22,7 +24,7 @@ export function WelcomeScreen() {
   const [email, setEmail] = useState('');
   const [password, setPassword] = useState('');
   const [siteName, setSiteName] = useState('');
-  const [timeZone, setTimeZone] = useState(() => Intl.DateTimeFormat().resolvedOptions().timeZone);
+  const [timeZone, setTimeZone] = useState(browserTimeZone);
 
   if (session.status === 'signed-in') return <Redirect href="/" />;
   if (state.data?.open === false) {
@@ -68,14 +70,7 @@ export function WelcomeScreen() {
           error={fieldError(welcome.error, 'password')}
         />
         <Field label="Name of the site" required value={siteName} onChange={setSiteName} error={fieldError(welcome.error, 'siteName')} />
-        <Field
-          label="Time zone of the site"
-          hint="Days and times are shown in it"
-          required
-          value={timeZone}
-          onChange={setTimeZone}
-          error={fieldError(welcome.error, 'timeZone')}
-        />
+        <TimeZoneSelect value={timeZone} onChange={setTimeZone} error={fieldError(welcome.error, 'timeZone')} />
         <Button kind="primary" submit wide busy={welcome.isPending}>
           Make the account
         </Button>

@@ -10,6 +10,7 @@ import { Notice } from '../ui/notice.tsx';
 import { Section } from '../ui/section.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
+import { AddSite } from './add-site.tsx';
 import { RoundsList } from './rounds-list.tsx';
 import { useRounds } from './use-rounds.ts';
 
@@ -46,7 +47,7 @@ export function RoundsScreen() {
         </EmptyState>
       ) : null}
       {query.data !== undefined && me.data !== undefined ? (
-        <Section title="Sites">
+        <Section title="Sites" aside={<AddSite />}>
           <div>
             {me.data.memberships.map((membership) => (
               <div key={membership.siteId}>
