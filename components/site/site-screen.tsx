@@ -1,5 +1,6 @@
 import { isAtLeast } from '#shared/domain/role.ts';
 import { useMe } from '../../hooks/use-me.ts';
+import { useSites } from '../../hooks/use-sites.ts';
 import { useSystems } from '../../hooks/use-systems.ts';
 import { useTitle } from '../../hooks/use-title.ts';
 import { Page } from '../shell/page.tsx';
@@ -9,6 +10,7 @@ import { Notice } from '../ui/notice.tsx';
 import { Skeleton } from '../ui/skeleton.tsx';
 import { Text } from '../ui/text.tsx';
 import { AddSystem } from './add-system.tsx';
+import { AuditPart } from './audit-part.tsx';
 import { InviteForm } from './invite-form.tsx';
 import { MailList } from './mail-list.tsx';
 import { MemberList } from './member-list.tsx';
@@ -19,6 +21,7 @@ export function SiteScreen({ siteId }: { siteId: string }) {
   const me = useMe();
   const systems = useSystems();
   const membership = me.data?.memberships.find((one) => one.siteId === siteId);
+  const timeZone = useSites().data?.find((site) => site.id === siteId)?.timeZone ?? 'UTC';
   useTitle(membership?.siteName ?? 'Site');
   if (me.isError) {
     return (
@@ -47,7 +50,7 @@ export function SiteScreen({ siteId }: { siteId: string }) {
     <Page>
       <div>
         <Heading level={1}>{membership.siteName}</Heading>
-        <Text soft>{`You are ${membership.role} here.`}</Text>
+        <Text soft>{`You are ${membership.role} here. Times are those of ${timeZone.replaceAll('_', ' ')}.`}</Text>
       </div>
       <Section title="Systems">
         {here.length === 0 && systems.isSuccess ? <Text soft>No system yet.</Text> : null}
@@ -63,6 +66,7 @@ export function SiteScreen({ siteId }: { siteId: string }) {
       <MemberList siteId={siteId} isOwner={isOwner} myId={me.data.id} />
       {isOwner ? <InviteForm siteId={siteId} /> : null}
       {isOwner ? <MailList siteId={siteId} /> : null}
+      {isAtLeast(membership.role, 'sitter') ? <AuditPart siteId={siteId} timeZone={timeZone} /> : null}
     </Page>
   );
 }

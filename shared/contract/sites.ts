@@ -28,6 +28,7 @@ export const auditEntrySchema = z.object({
   before: z.unknown(),
   after: z.unknown(),
 });
+export type AuditEntry = z.infer<typeof auditEntrySchema>;
 
 export const mailSchema = z.object({
   id: idSchema,
