@@ -155,7 +155,7 @@ export function createSites({ core, changes, notify, publicUrl }: SitesOptions):
           };
           tx.run(query.insertInto('invite').values(invite));
           const site = tx.first(query.selectFrom('site').select('name').where('id', '=', siteId));
-          const mail = inviteMail({ siteName: site?.name ?? '', role: body.role, link: `${publicUrl()}/invite?token=${token}` });
+          const mail = inviteMail({ siteName: site?.name ?? '', role: body.role, link: `${publicUrl()}/join?token=${token}` });
           notify.enqueue(tx, { dedupeKey: `invite:${id}`, siteId, toAddress: body.email, ...mail, nowMs });
           recordAudit(tx, {
             atMs: nowMs,

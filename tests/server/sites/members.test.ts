@@ -13,7 +13,7 @@ afterAll(() => server.close());
 async function invitedToken(owner: TestPerson, siteId: string, email: string): Promise<string> {
   const { items } = await owner.api('listOutbox', { params: { siteId } });
   const mail = items.find((candidate) => candidate.to === email);
-  const token = /token=([\w-]+)/.exec(mail?.body ?? '')?.[1];
+  const token = /\/join\?token=([\w-]+)/.exec(mail?.body ?? '')?.[1];
   if (token === undefined) throw new Error(`No invitation to ${email} was written`);
   return token;
 }
