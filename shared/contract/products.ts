@@ -22,7 +22,6 @@ export const labelSchema = z
     path: ['maxMl'],
     message: 'The upper end of the range must not be under its lower end',
   });
-export type Label = z.infer<typeof labelSchema>;
 
 export const productSchema = z.object({
   id: idSchema,
