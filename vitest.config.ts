@@ -42,7 +42,8 @@ export default defineConfig({
           include: ['tests/e2e/**/*.test.ts'],
           testTimeout: 180_000,
           hookTimeout: 300_000,
-          fileParallelism: false,
+          // Each journey has a server, a browser and devices of its own; they mostly wait.
+          maxWorkers: 2,
         },
       },
     ],

@@ -54,6 +54,8 @@ export async function openPage(browser: Browser, url: string, width: Width): Pro
     async expectAccessible() {
       for (const colorScheme of ['light', 'dark'] as const) {
         await page.emulateMedia({ colorScheme });
+        // Two frames, so that what is judged is what the theme painted.
+        await page.evaluate(() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))));
         const results = await new AxeBuilder({ page })
           .withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'])
           .options({ rules: { 'target-size': { enabled: true } } })
