@@ -112,8 +112,19 @@ function assemble(uses: UseRow[], versions: VersionRow[]): PlannedVolume {
 
   const planned = (fromMs: number, toMs: number) => all(fromMs, toMs).filter((slot) => slot.enabled);
 
-  /** Slot sizes of the carbon heads in schedules in force at any moment of (`fromMs`, `toMs`]. */
+  const changesMs = [...versions.map((version) => version.fromMs), ...uses.flatMap((use) => [use.fromMs, use.toMs ?? use.fromMs])];
+  const sizesBetween = new Map<string, number[]>();
+
+  /** Windows that hold the same changes have the same sizes: of thousands of window ends few are worked out. */
   function slotSizesMl(fromMs: number, toMs: number): number[] {
+    const key = `${changesMs.filter((atMs) => atMs <= fromMs).length} ${changesMs.filter((atMs) => atMs < toMs).length}`;
+    const sizes = sizesBetween.get(key) ?? workOutSlotSizesMl(fromMs, toMs);
+    sizesBetween.set(key, sizes);
+    return sizes;
+  }
+
+  /** Slot sizes of the carbon heads in schedules in force at any moment of (`fromMs`, `toMs`]. */
+  function workOutSlotSizesMl(fromMs: number, toMs: number): number[] {
     return deviceIds.flatMap((deviceId) => {
       const history = histories.get(deviceId) ?? [];
       return history.flatMap((schedule, index) => {

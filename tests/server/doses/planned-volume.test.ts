@@ -57,6 +57,32 @@ describe('the volume planned for a system', () => {
     expect(await bothWays(today, today + DAY_MS, ask)).toEqual([3, 0.5, 1]);
   });
 
+  it('says the same of a window whatever windows it was asked about before', async () => {
+    const headId = await scene.addHead({ head: 1 });
+    for (const [hour, mlPerDay] of [
+      [0, 2],
+      [5, 4],
+      [9, 0],
+    ] as const) {
+      scene.clock.set(today + hour * HOUR_MS);
+      await setDose(headId, mlPerDay);
+    }
+    const ends = Array.from({ length: 13 }, (_, hour) => [-1, 0, 1].map((apartMs) => today + hour * HOUR_MS + apartMs)).flat();
+    await scene.opened.core.writer.commit((tx) => {
+      const load = () => plannedVolumeIn(tx, scene.systemId, today - DAY_MS, today + DAY_MS);
+      const asked = load();
+      for (const fromMs of ends) {
+        for (const toMs of ends.filter((endMs) => endMs > fromMs)) {
+          const fresh = load();
+          expect([asked.largestSlotMl(fromMs, toMs), asked.isScheduled(fromMs, toMs)]).toEqual([
+            fresh.largestSlotMl(fromMs, toMs),
+            fresh.isScheduled(fromMs, toMs),
+          ]);
+        }
+      }
+    });
+  });
+
   it('ends with the use of a head for carbon', async () => {
     const headId = await scene.addHead({ head: 1 });
     await setDose(headId, 2);
