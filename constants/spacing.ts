@@ -1,5 +1,2 @@
 /** Distances in CSS pixels, on a grid of 4. */
 export const space = { xs: 4, s: 8, m: 12, l: 16, xl: 24, xxl: 32, xxxl: 48 } as const;
-
-/** Heights that a finger hits: everything, Stop, and the buttons of a stepper. */
-export const target = { usual: 44, stop: 48, stepper: 56 } as const;

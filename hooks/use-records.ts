@@ -62,24 +62,6 @@ export function useCreateHandDose(systemId: string) {
   });
 }
 
-/** What happened to the system, newest first. */
-export function useEvents(systemId: string) {
-  return useQuery({
-    queryKey: keys.events(systemId),
-    queryFn: ({ signal }) => call('listEvents', { params: { systemId }, query: { limit: listLimit }, signal }),
-    select: (page) => page.items,
-  });
-}
-
-export function useCreateEvent(systemId: string) {
-  return useMutation({
-    mutationFn: (body: CallOptions<'createEvent'>['body']) => {
-      const id = body.id ?? uuidv7();
-      return outbox.submit({ id, systemId, name: 'createEvent', options: { params: { systemId }, body: { ...body, id } } });
-    },
-  });
-}
-
 export function useCreateRefill(systemId: string) {
   return useMutation({
     mutationFn: ({ reservoirId, body }: { reservoirId: string; body: CallOptions<'createRefill'>['body'] }) => {

@@ -13,6 +13,7 @@ export function useSeries(systemId: string) {
   });
 }
 
+/** A series over a range as columns, for `useQuery` and `useQueries`. */
 export function pointsQuery(systemId: string, seriesId: string, range: TimeRange, count: number) {
   return {
     queryKey: keys.points(systemId, seriesId, range, count),
@@ -20,11 +21,6 @@ export function pointsQuery(systemId: string, seriesId: string, range: TimeRange
       call('getPoints', { params: { seriesId }, query: { ...queryOf(range), points: count }, signal }),
     placeholderData: keepPreviousData,
   };
-}
-
-/** A series over a range as columns. For several at once use `useQueries` with `pointsQuery`. */
-export function usePoints(systemId: string, seriesId: string, range: TimeRange, count: number) {
-  return useQuery(pointsQuery(systemId, seriesId, range, count));
 }
 
 /** The site's day as planned and as delivered. Slots come due by time alone, so it is asked again each minute. */
