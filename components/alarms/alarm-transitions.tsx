@@ -34,6 +34,7 @@ export function AlarmTransitions({
       <Heading level={2}>Log</Heading>
       <Table
         caption="What happened to this alarm"
+        hideCaption
         rows={[...transitions].sort((a, b) => b.seq - a.seq)}
         rowKey={(transition) => String(transition.seq)}
         columns={[

@@ -17,7 +17,7 @@ export function AuditPart({ siteId, timeZone }: { siteId: string; timeZone: stri
   const audit = useAudit(siteId, true);
   const nowMs = useNow(60_000);
   const [isWhole, setWhole] = useState(false);
-  const entries = audit.data ?? [];
+  const entries = [...(audit.data ?? [])].sort((a, b) => Date.parse(b.at) - Date.parse(a.at) || b.seq - a.seq);
   const shown = isWhole ? entries : entries.slice(0, shortCount);
   return (
     <Section title="Who did what">

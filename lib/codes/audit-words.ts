@@ -63,7 +63,7 @@ const deeds: Record<string, (after: Details, before: Details, entityId: string) 
   'test delete': (_, before) => `deleted ${test(before)}`,
   'test restore': (after) => `brought back ${test(after)}`,
   'test import': ({ added }) => `imported ${String(added)} tests`,
-  'event create': ({ kind }) => `wrote down an event (${String(kind)})`,
+  'event create': ({ kind }) => `wrote down an event: ${String(kind).replaceAll('-', ' ')}`,
   'hand-dose create': (after) => `wrote down a dose by hand${ml(after['ml']) === null ? '' : ` of ${ml(after['ml'])}`}`,
   'alarm take': ({ code }) => `is on the alarm ${alarm(code)}`,
   'alarm occur': ({ code }) => `raised the alarm ${alarm(code)}`,
