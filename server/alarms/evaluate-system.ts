@@ -9,6 +9,7 @@ import { loadCarbonRecord, type CarbonRecord } from './carbon-record.ts';
 import { effectiveRules } from './effective-rule.ts';
 import type { Watch } from './evaluator-lease.ts';
 import type { AlarmRuleModule, Finding, RuleContext } from './finding.ts';
+import { missingStop } from './keep-stopped.ts';
 import { loadPending } from './pending.ts';
 import { settleLimit } from './settle-limit.ts';
 import type { InterlockStop, StopPort } from './stop-port.ts';
@@ -88,6 +89,11 @@ export function evaluateSystem(tx: Transaction, input: EvaluationInput, port: St
     }
   }
   for (const stop of distinctStops(result.stops)) port.stopHeads(tx, stop);
+  const missing = missingStop(tx, { siteId, systemId, nowMs });
+  if (missing !== null) {
+    port.stopHeads(tx, missing);
+    result.stops.push(missing);
+  }
   return result;
 }
 

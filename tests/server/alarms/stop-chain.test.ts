@@ -89,6 +89,26 @@ describe('an overdose', () => {
     expect(await count()).toBe(before);
   });
 
+  it('stops a carbon head too that comes into use while the alarm is latched', async () => {
+    await receive({ run: 'a', ml: 3 });
+    await alarms.settled();
+    const second = await scene.addHead({ head: 2 });
+    const heads = [{ headId: second, mlPerDay: 2, slots: 4 }];
+    await scene.schedules.put(scene.systemId, { heads, confirmUnknownCeiling: false }, keeper, 'keeper');
+    await alarms.settled();
+    expect((await scene.openStops()).map((stop) => [stop.head, stop.cause])).toEqual([
+      [1, 'interlock'],
+      [2, 'interlock'],
+    ]);
+    await scene.schedules.publishDue();
+    expect(
+      scene.publisher
+        .schedules(scene.device.id)
+        .at(-1)
+        ?.heads.map((head) => head.enabled),
+    ).toEqual([false, false]);
+  });
+
   it('asks for a reset before the pumps may resume, and trips again by the next dose while the window is over', async () => {
     await receive({ run: 'a', ml: 3 });
     await alarms.settled();
