@@ -21,6 +21,8 @@ export interface ChangeLog {
   oldest(): number | null;
   /** Rows after `seq`, in order. */
   after(seq: number, limit: number): LoggedChange[];
+  /** The same of some systems only: what the others did is passed over by the database, which takes a fraction of the time. */
+  ofSystemsAfter(systemIds: readonly string[], seq: number, limit: number): LoggedChange[];
   close(): void;
 }
 
@@ -38,10 +40,15 @@ export function openChangeLog(databaseFile: string): ChangeLog {
   const after = connection.prepare<[number, number], ChangeRow>(
     'select seq, systemId, type, payload from change where seq > ? order by seq limit ?',
   );
+  // The sign keeps the planner on the order of `seq`.
+  const ofSystemsAfter = connection.prepare<[number, string, number], ChangeRow>(
+    'select seq, systemId, type, payload from change where seq > ? and +systemId in (select value from json_each(?)) order by seq limit ?',
+  );
   return {
     newest: () => newest.get()?.seq ?? 0,
     oldest: () => oldest.get()?.seq ?? null,
     after: (seq, limit) => after.all(seq, limit).map(frameOf),
+    ofSystemsAfter: (systemIds, seq, limit) => ofSystemsAfter.all(seq, JSON.stringify(systemIds), limit).map(frameOf),
     close: () => void connection.close(),
   };
 }

@@ -7,7 +7,6 @@ import type { TicketHolder } from './tickets.ts';
 const MOST_REPLAYED = 5_000;
 /** The log is one for all systems: beyond this many rows looking for one's own costs more than refetching. */
 const MOST_READ = 50_000;
-const PAGE = 1_000;
 /** A browser that was told to go has this long to say so. */
 const CLOSING_MS = 3_000;
 
@@ -47,19 +46,9 @@ export function createLiveConnection(
     const oldest = log.oldest();
     const isPruned = since < newest && (oldest === null || since < oldest - 1);
     if (since > newest || isPruned || newest - since > MOST_READ) return null;
-    const own: LoggedChange[] = [];
-    let bytes = 0;
-    let readSeq = since;
-    while (readSeq < newest) {
-      const page = log.after(readSeq, PAGE);
-      for (const change of page) {
-        if (!sites.has(change.systemId)) continue;
-        own.push(change);
-        bytes += change.frame.length;
-      }
-      if (own.length > MOST_REPLAYED || bytes > maxBufferedBytes) return null;
-      readSeq = page.at(-1)?.seq ?? newest;
-    }
+    const own = log.ofSystemsAfter([...sites.keys()], since, MOST_REPLAYED + 1);
+    const bytes = own.reduce((sum, change) => sum + change.frame.length, 0);
+    if (own.length > MOST_REPLAYED || bytes > maxBufferedBytes) return null;
     return own;
   }
 
