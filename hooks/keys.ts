@@ -32,7 +32,6 @@ export const keys = {
   tests: (systemId: string) => ['system', systemId, 'tests'] as const,
   handDoses: (systemId: string) => ['system', systemId, 'hand-doses'] as const,
   events: (systemId: string) => ['system', systemId, 'events'] as const,
-  orders: (systemId: string) => ['system', systemId, 'orders'] as const,
   alarms: (systemId: string) => ['system', systemId, 'alarms'] as const,
   alarmLog: (systemId: string) => ['system', systemId, 'alarm-log'] as const,
   alarm: (alarmId: string) => ['alarm', alarmId] as const,
