@@ -1,10 +1,31 @@
 import { fileURLToPath } from 'node:url';
-import { defineConfig } from 'vitest/config';
+import { defineConfig, type TestProjectInlineConfiguration } from 'vitest/config';
 
 const here = (path: string) => fileURLToPath(new URL(path, import.meta.url));
-const clientFolders = '{app,components,hooks,lib,constants}';
 
-/** Three projects: what runs in Node.js, what runs in a simulated DOM, and the journeys in a real browser. */
+/** Client code outside a browser: pure parts in Node.js (`.test.ts`), components in a simulated DOM (`.test.tsx`), which is slow to set up. */
+function clientProject(name: string, environment: 'node' | 'jsdom', ending: 'ts' | 'tsx'): TestProjectInlineConfiguration {
+  return {
+    define: { __DEV__: 'true' },
+    resolve: {
+      alias: {
+        'react-native': here('./node_modules/react-native-web'),
+        // Its main file is CommonJS, whose own requires know nothing of the alias above.
+        'react-native-svg': here('./node_modules/react-native-svg/lib/module/index.js'),
+      },
+      extensions: ['.web.tsx', '.web.ts', '.web.js', '.tsx', '.ts', '.mjs', '.js', '.json'],
+    },
+    test: {
+      name,
+      environment,
+      include: [`tests/{app,components,hooks,lib,constants}/**/*.test.${ending}`],
+      setupFiles: environment === 'jsdom' ? ['tests/helpers/client-setup.ts'] : [],
+      server: { deps: { inline: [/react-native/, /expo/] } },
+      testTimeout: 20_000,
+    },
+  };
+}
+
 export default defineConfig({
   test: {
     projects: [
@@ -17,24 +38,8 @@ export default defineConfig({
           hookTimeout: 30_000,
         },
       },
-      {
-        define: { __DEV__: 'true' },
-        resolve: {
-          alias: {
-            'react-native': here('./node_modules/react-native-web'),
-            // Its main file is CommonJS, whose own requires know nothing of the alias above.
-            'react-native-svg': here('./node_modules/react-native-svg/lib/module/index.js'),
-          },
-          extensions: ['.web.tsx', '.web.ts', '.web.js', '.tsx', '.ts', '.mjs', '.js', '.json'],
-        },
-        test: {
-          name: 'client',
-          environment: 'jsdom',
-          include: [`tests/${clientFolders}/**/*.test.{ts,tsx}`],
-          setupFiles: ['tests/helpers/client-setup.ts'],
-          server: { deps: { inline: [/react-native/, /expo/] } },
-        },
-      },
+      clientProject('client', 'node', 'ts'),
+      clientProject('dom', 'jsdom', 'tsx'),
       {
         test: {
           name: 'e2e',

@@ -4,11 +4,12 @@ import type { Browser, Page } from 'playwright-core';
 import { launchChromium, signIn } from './screenshots/browser.ts';
 
 /**
- * `npm run screenshots -- [URL] [FOLDER]`: every screen of a running demo at phone and wide, in both themes, and the
- * picture of the README made from two of them.
+ * `npm run screenshots -- [URL] [FOLDER]`: every screen of a running demo at phone and wide, in both themes, into a folder
+ * that is not committed, and the README's picture made from two of them.
  */
 const url = process.argv[2] ?? 'http://127.0.0.1:4000';
-const folder = process.argv[3] ?? 'docs/images';
+const folder = process.argv[3] ?? 'screenshots';
+const overview = 'docs/images/overview.png';
 const sizes = { phone: { width: 390, height: 844 }, wide: { width: 1280, height: 860 } } as const;
 const screens = ['', 'overlay', 'tests', 'alarms', 'rig'] as const;
 
@@ -56,11 +57,12 @@ async function compose(browser: Browser): Promise<void> {
       <img style="width:930px;border:1px solid #8c8371" src="${picture('overlay-wide-light')}">
     </body>`,
   );
-  await page.screenshot({ path: path.join(folder, 'overview.png') });
+  await page.screenshot({ path: overview });
   await page.close();
 }
 
 mkdirSync(folder, { recursive: true });
+mkdirSync(path.dirname(overview), { recursive: true });
 const browser = await launchChromium();
 try {
   for (const size of ['phone', 'wide'] as const) for (const theme of ['light', 'dark'] as const) await shoot(browser, size, theme);

@@ -51,7 +51,7 @@ await check('Lint', 'npm', npm('lint'));
 await check('Import boundaries', 'npm', npm('boundaries'));
 await check('Types', 'npm', npm('typecheck'));
 await check('Unused code and packages', 'npm', npm('unused'));
-await suite('Unit, published values, API, MQTT, systems', ['node', 'client']);
+await suite('Unit, published values, API, MQTT, systems', ['node', 'client', 'dom']);
 await check('Web build', process.execPath, ['scripts/setup/build-web-main.mjs']);
 await suite('Journeys in the browser', ['e2e']);
 

@@ -1,3 +1,4 @@
+// @vitest-environment jsdom
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { endpoints } from '#shared/contract/endpoints.ts';
 import { call } from '../../lib/api.ts';

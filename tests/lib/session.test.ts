@@ -1,3 +1,4 @@
+// @vitest-environment jsdom
 import { afterEach, describe, expect, it, vi } from 'vitest';
 import { ApiError } from '../../lib/api-problem.ts';
 import { createSession } from '../../lib/session.ts';
