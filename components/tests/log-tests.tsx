@@ -6,9 +6,11 @@ import type { Nutrient } from '../../lib/format/nutrient.ts';
 import { Button } from '../ui/button.tsx';
 import { Field } from '../ui/field.tsx';
 import { Form } from '../ui/form.tsx';
+import { LiveRegion } from '../ui/live-region.tsx';
 import { Notice } from '../ui/notice.tsx';
+import { Text } from '../ui/text.tsx';
 import { ResultInput } from './result-input.tsx';
-import { consequenceSentence } from './result-words.ts';
+import { consequenceSentence, quantityNames } from './result-words.ts';
 import { localTime, readLocalTime, readResult, type ResultDraft, usualUnit } from './test-form.ts';
 
 const nutrients: readonly Nutrient[] = ['nitrate', 'phosphate'];
@@ -16,7 +18,12 @@ const nutrients: readonly Nutrient[] = ['nitrate', 'phosphate'];
 type Drafts = Record<Nutrient, ResultDraft>;
 type Errors = Partial<Record<Nutrient | 'at', string>>;
 
-/** Both nutrients in one sheet. What was saved leaves the form, so that pressing again never writes it twice. */
+type Saved = Pick<Test, 'canonicalMgPerL' | 'below'> & { quantity: Nutrient; waits: boolean };
+
+/**
+ * Both nutrients in one sheet. Both are read before either is sent, and what was saved leaves the form, so that pressing again
+ * never writes it twice.
+ */
 export function LogTests({
   systemId,
   timeZone,
@@ -37,11 +44,14 @@ export function LogTests({
   const [note, setNote] = useState('');
   const [errors, setErrors] = useState<Errors>({});
   const [failed, setFailed] = useState<unknown>(null);
+  const [saved, setSaved] = useState<readonly Saved[]>([]);
+  const open = nutrients.filter((nutrient) => saved.every((one) => one.quantity !== nutrient));
 
   async function save(): Promise<void> {
-    const given = nutrients.filter((nutrient) => drafts[nutrient].text.trim() !== '');
+    const given = open.filter((nutrient) => drafts[nutrient].text.trim() !== '');
     const found: Errors = {};
-    if (given.length === 0) found.nitrate = 'Give at least one of the two';
+    const [first] = open;
+    if (given.length === 0 && first !== undefined) found[first] = open.length === 2 ? 'Give at least one of the two' : 'Give the result';
     const atText = at === null ? new Date().toISOString() : readLocalTime(at, timeZone);
     if (atText === null) found.at = 'Give the day and time of the test';
     const reads = given.map((nutrient) => ({ nutrient, read: readResult(nutrient, drafts[nutrient]) }));
@@ -50,28 +60,34 @@ export function LogTests({
     setFailed(null);
     if (Object.keys(found).length > 0 || atText === null) return;
 
-    const written: Pick<Test, 'quantity' | 'canonicalMgPerL' | 'below'>[] = [];
-    let waiting = false;
+    let written = saved;
     for (const { nutrient, read } of reads) {
       if (!read.ok) continue;
       const { unit, below } = drafts[nutrient];
       try {
         const result = await create.mutateAsync({ at: atText, quantity: nutrient, value: read.value, unit, below, note });
-        waiting ||= result.state === 'waiting';
+        written = [...written, { quantity: nutrient, canonicalMgPerL: read.canonicalMgPerL, below, waits: result.state === 'waiting' }];
+        setSaved(written);
       } catch (error) {
         setErrors({ [nutrient]: fieldError(error, 'value') ?? undefined, at: fieldError(error, 'at') ?? undefined });
         setFailed(isSaidAtFields(error) && (fieldError(error, 'value') ?? fieldError(error, 'at')) !== null ? null : error);
         return;
       }
-      written.push({ quantity: nutrient, canonicalMgPerL: read.canonicalMgPerL, below });
-      setDrafts((now) => ({ ...now, [nutrient]: { ...now[nutrient], text: '' } }));
     }
-    onDone(`${consequenceSentence(written)}${waiting ? ' Kept here until the network is back.' : ''}`);
+    const waits = written.some((one) => one.waits);
+    onDone(`${consequenceSentence(written)}${waits ? ' Kept here until the network is back.' : ''}`);
   }
 
   return (
     <Form name="Write down a test" onSubmit={() => void save()}>
-      {nutrients.map((nutrient) => (
+      <LiveRegion>
+        {saved.map((one) => (
+          <Text key={one.quantity} bold>
+            {`${quantityNames[one.quantity]} is saved.`}
+          </Text>
+        ))}
+      </LiveRegion>
+      {open.map((nutrient) => (
         <ResultInput
           key={nutrient}
           quantity={nutrient}

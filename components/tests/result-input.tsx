@@ -5,8 +5,9 @@ import { Button } from '../ui/button.tsx';
 import { Checkbox } from '../ui/checkbox.tsx';
 import { Select } from '../ui/select.tsx';
 import { Stepper } from '../ui/stepper.tsx';
+import { Text } from '../ui/text.tsx';
 import { lastValue, type ResultDraft, stepFor } from './test-form.ts';
-import { quantityNames, resultWords } from './result-words.ts';
+import { ionWords, quantityNames, resultWords } from './result-words.ts';
 
 /** One result: value with its stepper; unit and "below detection" one press away. */
 export function ResultInput({
@@ -26,6 +27,7 @@ export function ResultInput({
   const { step, decimals } = stepFor(draft.unit);
   const last = tests.find((test) => test.quantity === quantity);
   const name = quantityNames[quantity];
+  const asIon = ionWords(quantity, draft);
   return (
     <div className="field-group">
       <Stepper
@@ -39,6 +41,7 @@ export function ResultInput({
         hint={last === undefined ? undefined : `Last: ${resultWords(last)}`}
         error={error}
       />
+      {asIon === null ? null : <Text figures>{asIon}</Text>}
       {more ? (
         <>
           <Select

@@ -1,6 +1,8 @@
 import type { Test, TestQuantity } from '#shared/contract/records.ts';
-import { formatNumber } from '../../lib/format/number.ts';
-import { defaultBands, placeInBand, type Nutrient } from '../../lib/format/nutrient.ts';
+import { unitsFor } from '#shared/units/nutrient-units.ts';
+import { decimalsFor, formatNumber } from '../../lib/format/number.ts';
+import { defaultBands, nutrientDecimals, placeInBand, type Nutrient } from '../../lib/format/nutrient.ts';
+import { readResult, type ResultDraft } from './test-form.ts';
 
 export const quantityNames: Record<TestQuantity, string> = {
   nitrate: 'Nitrate',
@@ -18,6 +20,17 @@ export function isNutrient(quantity: TestQuantity): quantity is Nutrient {
 export function resultWords(test: Pick<Test, 'value' | 'unit' | 'below'>): string {
   const figure = formatNumber(test.value, decimalsOf(test.value));
   return `${test.below ? 'under ' : ''}${figure} ${test.unit}`;
+}
+
+/** `= 55 mg/L NO3`: a result in another unit, as the ion. Null where nothing is to be added, as for alkalinity, which is no ion. */
+export function ionWords(quantity: TestQuantity, draft: ResultDraft): string | null {
+  const [ionUnit] = unitsFor(quantity);
+  if (quantity === 'alkalinity' || ionUnit === undefined || draft.unit === ionUnit) return null;
+  const read = readResult(quantity, draft);
+  if (!read.ok) return null;
+  const mgPerL = read.canonicalMgPerL;
+  const decimals = isNutrient(quantity) ? nutrientDecimals(quantity, mgPerL) : decimalsFor(mgPerL);
+  return `= ${draft.below ? 'under ' : ''}${formatNumber(mgPerL, decimals)} ${ionUnit}`;
 }
 
 /** One test in words: `Nitrate 22 mg/L NO3`, and that it was corrected. */

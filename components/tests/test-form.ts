@@ -1,6 +1,8 @@
 import { DateTime } from 'luxon';
 import type { Test, TestQuantity } from '#shared/contract/records.ts';
-import { type TestUnit, toCanonicalMgPerL, unitsFor } from '#shared/units/nutrient-units.ts';
+import { highestPlausibleMgPerL, isPlausible } from '#shared/domain/test-plausibility.ts';
+import { fromCanonicalMgPerL, type TestUnit, toCanonicalMgPerL, unitsFor } from '#shared/units/nutrient-units.ts';
+import { decimalsFor, formatNumber } from '../../lib/format/number.ts';
 import { parseDecimal, parseDecimalSentence } from '../../lib/parse-decimal.ts';
 
 /** One result as typed. */
@@ -47,6 +49,13 @@ export function readResult(quantity: TestQuantity, draft: ResultDraft): ResultRe
   if (draft.below && parsed.value === 0) return { ok: false, error: 'Give the value that it was under, as printed by the kit' };
   const canonicalMgPerL = toCanonicalMgPerL(quantity, parsed.value, draft.unit);
   if (canonicalMgPerL === null) return { ok: false, error: `${draft.unit} does not fit ${quantity}` };
+  if (!isPlausible(quantity, canonicalMgPerL)) {
+    const most = fromCanonicalMgPerL(quantity, highestPlausibleMgPerL[quantity], draft.unit) ?? 0;
+    return {
+      ok: false,
+      error: `Over ${formatNumber(most, decimalsFor(most))} ${draft.unit} cannot be real: check the number and the unit`,
+    };
+  }
   return { ok: true, value: parsed.value, canonicalMgPerL };
 }
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Test } from '#shared/contract/records.ts';
-import { consequenceSentence, placeWords, resultWords } from '../../../components/tests/result-words.ts';
+import { consequenceSentence, ionWords, placeWords, resultWords } from '../../../components/tests/result-words.ts';
 import { lastValue, localTime, readLocalTime, readResult, usualUnit } from '../../../components/tests/test-form.ts';
 
 const test: Test = {
@@ -43,6 +43,13 @@ describe('a result as typed', () => {
     expect(read.ok ? '' : read.error.length).toBeGreaterThan(5);
   });
 
+  it.each([
+    ['nitrate', '501', 'mg/L NO3', 'Over 500 mg/L NO3 cannot be real: check the number and the unit'],
+    ['phosphate', '8', 'mg/L PO4-P', 'Over 6.52 mg/L PO4-P cannot be real: check the number and the unit'],
+  ] as const)('refuses %s of %s %s as a slip', (quantity, text, unit, error) => {
+    expect(readResult(quantity, { text, unit, below: false })).toEqual({ ok: false, error });
+  });
+
   it('goes on in the unit that was used last, from the last value in that unit', () => {
     expect(usualUnit('phosphate', [test])).toBe('mg/L PO4-P');
     expect(usualUnit('nitrate', [test])).toBe('mg/L NO3');
@@ -74,6 +81,19 @@ describe('the words for a result', () => {
   it('place nutrients in their band and leave others unplaced', () => {
     expect(placeWords({ quantity: 'nitrate', canonicalMgPerL: 12, below: false })).toBe('above');
     expect(placeWords({ quantity: 'alkalinity', canonicalMgPerL: 140, below: false })).toBeNull();
+  });
+});
+
+describe('a result in another unit', () => {
+  it.each([
+    ['nitrate', '12,4', 'mg/L NO3-N', false, '= 55 mg/L NO3'],
+    ['phosphate', '30', 'ug/L PO4-P', false, '= 0.09 mg/L PO4'],
+    ['phosphate', '10', 'ug/L PO4', true, '= under 0.01 mg/L PO4'],
+    ['nitrate', '12', 'mg/L NO3', false, null],
+    ['nitrate', '', 'mg/L NO3-N', false, null],
+    ['alkalinity', '8', 'dKH', false, null],
+  ] as const)('is %s %s %s (below: %s) as the ion', (quantity, text, unit, below, words) => {
+    expect(ionWords(quantity, { text, unit, below })).toBe(words);
   });
 });
 
