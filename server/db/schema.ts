@@ -393,6 +393,8 @@ export interface HeadStopTable {
   cause: 'person' | 'interlock';
   alarmId: string | null;
   stoppedAtMs: number;
+  /** Arrival of the pump's own word that the head is stopped; null until then, and again once the pump says otherwise. */
+  confirmedAtMs: number | null;
   actorKind: ActorKind;
   actorId: string;
   resumedAtMs: number | null;

@@ -32,7 +32,8 @@ export function createIngest(core: Core, hooks: IngestHooks): Ingest {
       }
       case 'state':
         applyState(tx, device, decoded.state, { receivedMs, nowMs, retained: message.retained === true });
-        hooks.onState(tx, device, decoded.state, receivedMs);
+        // What a broker had kept may be older than a stop, and proves nothing of it.
+        if (message.retained !== true) hooks.onState(tx, device, decoded.state, receivedMs);
         return true;
       case 'receipt':
         hooks.onReceipt(tx, device, decoded.receipt, receivedMs);

@@ -3,6 +3,7 @@ import { systemActor } from '../audit/record-audit.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
 import { LATEST_MS } from '../ingest/plausible-time.ts';
+import { confirmStop, unconfirmStop } from './confirm-stop.ts';
 import { type OrderRow, orderStop, settleOrder } from './insert-order.ts';
 import { openStop } from './open-stop.ts';
 
@@ -20,6 +21,7 @@ export function receiveReceipt(tx: Transaction, deviceId: string, receipt: Recei
     const isClockSet = receipt.atMs >= UNSET_CLOCK_BELOW_MS && receipt.atMs < LATEST_MS;
     const atMs = isClockSet ? receipt.atMs : receivedMs;
     settleOrder(tx, order.id, { state: outcome, why: receipt.why ?? null, atMs });
+    if (order.do === 'stop' && outcome === 'done') confirmStop(tx, { deviceId, head: order.head, receivedMs });
     return { ...order, state: outcome, why: receipt.why ?? null, outcomeAtMs: atMs };
   }
   if (order.do === 'resume' && outcome === 'done') stopAgain(tx, order, receivedMs);
@@ -31,5 +33,6 @@ function stopAgain(tx: Transaction, order: OrderRow, nowMs: number): void {
   const stop = openStop(tx, order.deviceId, order.head);
   if (stop === undefined) return;
   const { siteId, deviceId, head } = order;
+  unconfirmStop(tx, { deviceId, head, receivedMs: nowMs });
   orderStop(tx, { siteId, deviceId, head, causeAlarmId: stop.alarmId, actor: systemActor, nowMs });
 }

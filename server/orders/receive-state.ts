@@ -2,6 +2,7 @@ import type { StatePayload } from '#shared/mqtt/payloads.ts';
 import { systemActor } from '../audit/record-audit.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
+import { confirmStop, unconfirmStop } from './confirm-stop.ts';
 import { orderStop, settleOrder, waitingOrders } from './insert-order.ts';
 import { openStop } from './open-stop.ts';
 
@@ -18,6 +19,7 @@ export function receiveState(tx: Transaction, device: { id: string; siteId: stri
     if (reported === 'stopped') {
       // A resume on its way may undo what this report says: then only the receipt of the stop answers it.
       if (isResumeUnderWay(tx, device.id, head, receivedMs)) continue;
+      confirmStop(tx, { deviceId: device.id, head, receivedMs });
       for (const order of waiting) {
         if (order.do !== 'stop') continue;
         settleOrder(tx, order.id, { state: 'done', why: null, atMs: receivedMs });
@@ -25,6 +27,7 @@ export function receiveState(tx: Transaction, device: { id: string; siteId: stri
       }
       continue;
     }
+    unconfirmStop(tx, { deviceId: device.id, head, receivedMs });
     const stop = openStop(tx, device.id, head);
     if (stop === undefined || waiting.some((order) => order.do === 'resume')) continue;
     orderStop(tx, { siteId: device.siteId, deviceId: device.id, head, causeAlarmId: stop.alarmId, actor: systemActor, nowMs: receivedMs });

@@ -36,6 +36,7 @@ export function headRows() {
       'stop.cause as stopCause',
       'stop.alarmId as stopAlarmId',
       'stop.stoppedAtMs',
+      'stop.confirmedAtMs as stopConfirmedAtMs',
     ]);
 }
 
@@ -45,6 +46,7 @@ const slotsSchema = z.array(z.number().int());
 
 export function headOf(row: HeadRow): Head {
   const { mlPerDay, slotMl, slotsUtcMin, scheduledMs, stopCause, stoppedAtMs } = row;
+  const confirmedAt = row.stopConfirmedAtMs === null ? null : isoOf(row.stopConfirmedAtMs);
   const isScheduled = mlPerDay !== null && slotMl !== null && slotsUtcMin !== null && scheduledMs !== null;
   return {
     id: row.id,
@@ -58,6 +60,9 @@ export function headOf(row: HeadRow): Head {
     mlPerSecond: row.mlPerSecond,
     smallestMl: row.smallestMl,
     schedule: isScheduled ? { mlPerDay, slotMl, slotsUtcMin: slotsSchema.parse(JSON.parse(slotsUtcMin)), since: isoOf(scheduledMs) } : null,
-    stop: stopCause !== null && stoppedAtMs !== null ? { cause: stopCause, alarmId: row.stopAlarmId, at: isoOf(stoppedAtMs) } : null,
+    stop:
+      stopCause !== null && stoppedAtMs !== null
+        ? { cause: stopCause, alarmId: row.stopAlarmId, at: isoOf(stoppedAtMs), confirmedAt }
+        : null,
   };
 }

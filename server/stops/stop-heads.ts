@@ -62,6 +62,7 @@ export function stopHeads(tx: Transaction, stop: Stop): string[] {
         cause,
         alarmId,
         stoppedAtMs: nowMs,
+        confirmedAtMs: null,
         actorKind: actor.kind,
         actorId: actor.id,
         resumedAtMs: null,

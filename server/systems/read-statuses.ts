@@ -14,7 +14,7 @@ const openAlarms = (systemIds: string[]) =>
     .where('closedAtMs', 'is', null)
     .select(['systemId', 'priority', 'acknowledged', 'latched']);
 
-/** Carbon heads in use, each with whether it is kept stopped. */
+/** Carbon heads in use, each with whether it is kept stopped, and whether its pump has said so. */
 const carbonHeads = (systemIds: string[]) =>
   query
     .selectFrom('headAssignment')
@@ -25,7 +25,7 @@ const carbonHeads = (systemIds: string[]) =>
     .where('headAssignment.systemId', 'in', systemIds)
     .where('headAssignment.toMs', 'is', null)
     .where('headAssignment.kind', '=', 'carbon')
-    .select(['headAssignment.systemId', 'headStop.id as stopId']);
+    .select(['headAssignment.systemId', 'headStop.id as stopId', 'headStop.confirmedAtMs']);
 
 const heardDevices = (systemIds: string[]) =>
   query
@@ -121,6 +121,7 @@ export async function readStatuses(reader: Reader, systems: readonly SystemPlace
           unacknowledgedAlarms: ownAlarms.filter((alarm) => alarm.acknowledged === 0).length,
           latched: ownAlarms.some((alarm) => alarm.latched === 1),
           stoppedHeads: ownHeads.filter((head) => head.stopId !== null).length,
+          unconfirmedStops: ownHeads.filter((head) => head.stopId !== null && head.confirmedAtMs === null).length,
           carbonHeads: ownHeads.length,
           offlineDevices: ownDevices.filter((device) => device.online === 0).length,
           heardAt: ownDevices.length === 0 ? null : isoOf(heardAtMs),

@@ -18,7 +18,15 @@ export const headSchema = z.object({
     .object({ mlPerDay: z.number(), slotMl: z.number(), slotsUtcMin: z.array(z.number().int()), since: timestampSchema })
     .nullable(),
   /** Open when a person or an interlock keeps the head stopped. */
-  stop: z.object({ cause: z.enum(['person', 'interlock']), alarmId: idSchema.nullable(), at: timestampSchema }).nullable(),
+  stop: z
+    .object({
+      cause: z.enum(['person', 'interlock']),
+      alarmId: idSchema.nullable(),
+      at: timestampSchema,
+      /** When the pump itself said that this head is stopped; null until it has, and again once it says otherwise. */
+      confirmedAt: timestampSchema.nullable(),
+    })
+    .nullable(),
 });
 export type Head = z.infer<typeof headSchema>;
 

@@ -21,6 +21,8 @@ export const systemStatusSchema = z.object({
   latched: z.boolean(),
   /** Carbon heads that a person or an interlock keeps stopped. */
   stoppedHeads: z.number().int(),
+  /** Those of them whose pump has not yet said that they are stopped: they may still dose. */
+  unconfirmedStops: z.number().int(),
   carbonHeads: z.number().int(),
   /** Devices that were heard once and are offline now. */
   offlineDevices: z.number().int(),

@@ -17,6 +17,7 @@ export function makeStatus(changed: Partial<SystemStatus> = {}): SystemStatus {
     unacknowledgedAlarms: 0,
     latched: false,
     stoppedHeads: 0,
+    unconfirmedStops: 0,
     carbonHeads: 1,
     offlineDevices: 0,
     heardAt: at(-12_000),

@@ -154,7 +154,8 @@ const statements = [
   `create index headScheduleByHead on headSchedule(headId, fromMs)`,
   `create table headStop (
     id text primary key, siteId text not null, systemId text not null, deviceId text not null, head integer not null, cause text not null,
-    alarmId text, stoppedAtMs integer not null, actorKind text not null, actorId text not null, resumedAtMs integer, resumedBy text
+    alarmId text, stoppedAtMs integer not null, confirmedAtMs integer, actorKind text not null, actorId text not null, resumedAtMs integer,
+    resumedBy text
   ) strict, without rowid`,
   `create unique index headStopOpen on headStop(deviceId, head) where resumedAtMs is null`,
   `create index headStopBySystem on headStop(systemId, stoppedAtMs)`,

@@ -25,6 +25,7 @@ const status: SystemStatus = {
   unacknowledgedAlarms: 0,
   latched: false,
   stoppedHeads: 0,
+  unconfirmedStops: 0,
   carbonHeads: 1,
   offlineDevices: 0,
   heardAt: ago(12_000),

@@ -1,6 +1,7 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { uuidv7 } from 'uuidv7';
 import { rigEndpoints } from '#shared/contract/rig.ts';
+import { query } from '../../../server/db/open.ts';
 import { headUseAt } from '../../../server/doses/head-use.ts';
 import { NotFoundError } from '../../../server/errors.ts';
 import { manualClock, openTestCore, type TestCore } from '../../helpers/core.ts';
@@ -158,6 +159,11 @@ describe('changing what a head is used for', () => {
       resumedBy: null,
     });
     const [head] = await rig.heads.list(rig.systemId);
-    expect(head).toMatchObject({ id: value.id, stop: { cause: 'person', alarmId: null, at: '2026-03-01T12:00:00.000Z' } });
+    expect(head).toMatchObject({
+      id: value.id,
+      stop: { cause: 'person', alarmId: null, at: '2026-03-01T12:00:00.000Z', confirmedAt: null },
+    });
+    await opened.core.writer.commit((tx) => tx.run(query.updateTable('headStop').set({ confirmedAtMs: startMs + 2000 })));
+    expect(await rig.heads.list(rig.systemId)).toMatchObject([{ stop: { confirmedAt: '2026-03-01T12:00:02.000Z' } }]);
   });
 });

@@ -233,6 +233,64 @@ describe('a stop', () => {
   });
 });
 
+describe('the proof of a stop', () => {
+  const confirmed = async () => (await scene.openStops()).map((row) => row.confirmedAtMs);
+
+  it('is the receipt of the pump, and its time of arrival stays', async () => {
+    const [orderId] = await interlock(uuidv7());
+    expect(await confirmed()).toEqual([null]);
+    scene.clock.advance(2_000);
+    const provedMs = scene.clock.nowMs();
+    await scene.receipt(scene.device.id, { order: orderId ?? '', outcome: 'done', atMs: provedMs - 60_000 });
+    scene.clock.advance(5_000);
+    await scene.state(scene.device.id, [{ head: 1, state: 'stopped' }]);
+    expect(await confirmed()).toEqual([provedMs]);
+    const changes = await scene.opened.core.reader.selectFrom('change').select('payload').where('atMs', '=', provedMs).execute();
+    expect(changes).toEqual([{ payload: '{"reason":"stop"}' }]);
+  });
+
+  it('is a report that says stopped, also when somebody presses again while the pump is away', async () => {
+    await interlock(uuidv7());
+    await scene.state(scene.device.id, [{ head: 1, state: 'stopped' }]);
+    scene.publisher.connected.clear();
+    await stop();
+    expect(await confirmed()).toEqual([scene.clock.nowMs()]);
+  });
+
+  it('is not a refusal, nor a report of another head', async () => {
+    answerAll(scene, 'refused');
+    await stop();
+    await scene.state(scene.device.id, [{ head: 2, state: 'stopped' }]);
+    expect(await confirmed()).toEqual([null]);
+  });
+
+  it('is gone when the pump says otherwise, until it has stopped again', async () => {
+    answerAll(scene);
+    await stop();
+    scene.publisher.onOrder = () => undefined;
+    await scene.state(scene.device.id, [{ head: 1, state: 'dosing' }]);
+    expect(await confirmed()).toEqual([null]);
+    scene.clock.advance(1_000);
+    await scene.state(scene.device.id, [{ head: 1, state: 'stopped' }]);
+    expect(await confirmed()).toEqual([scene.clock.nowMs()]);
+  });
+
+  it('is gone when a resume that was taken back comes through late', async () => {
+    answerAll(scene);
+    await stop();
+    let resumeId = '';
+    scene.publisher.onOrder = (_, order) => (resumeId = order.do === 'resume' ? order.id : resumeId);
+    const resuming = resume();
+    await settle();
+    const [stopId] = await interlock(uuidv7());
+    await resuming;
+    await scene.receipt(scene.device.id, { order: resumeId, outcome: 'done' });
+    expect(await confirmed()).toEqual([null]);
+    await scene.receipt(scene.device.id, { order: stopId ?? '', outcome: 'done' });
+    expect(await confirmed()).toEqual([scene.clock.nowMs()]);
+  });
+});
+
 describe('resuming', () => {
   beforeEach(async () => {
     answerAll(scene);

@@ -80,6 +80,7 @@ describe('a new system', () => {
       unacknowledgedAlarms: 0,
       latched: false,
       stoppedHeads: 0,
+      unconfirmedStops: 0,
       carbonHeads: 0,
       offlineDevices: 0,
       heardAt: null,
@@ -296,10 +297,34 @@ describe("today's dose", () => {
       publishedAtMs: null,
     });
     const { status } = await systems.get(userId, systemId);
-    expect(status.carbonHeads).toBe(1);
+    expect(status).toMatchObject({ carbonHeads: 1, stoppedHeads: 0, unconfirmedStops: 0 });
     // 28th 23:00, 29th 00:00, 11:00 and 13:00 UTC; the slot of 22:00 belongs to the next day.
     expect(status.plannedTodayMl).toBe(2);
     expect(status.plannedSoFarMl).toBe(1.5);
+  });
+});
+
+describe('the stops of a system', () => {
+  it('are told apart by whether the pump has said that its carbon head is stopped', async () => {
+    const systemId = await addSystemRow(opened.core, siteId);
+    const deviceId = uuidv7();
+    const device = { id: deviceId, siteId, systemId, name: 'Pump', kind: 'pump', secretHash: '', credentialVersion: 1 } as const;
+    await insertRow(opened.core, 'device', { ...device, createdAtMs: 0 });
+    const at = { siteId, systemId, deviceId };
+    for (const [head, kind, confirmedAtMs] of [
+      [1, 'carbon', null],
+      [2, 'carbon', clock.nowMs()],
+      [3, 'other', null],
+    ] as const) {
+      const headId = uuidv7();
+      await insertRow(opened.core, 'head', { id: headId, siteId, deviceId, head, createdAtMs: 0 });
+      const use = { kind, productId: null, reservoirId: null, mlPerSecond: 1, smallestMl: 0.2, fromMs: 0, toMs: null, actorId: userId };
+      await insertRow(opened.core, 'headAssignment', { id: uuidv7(), siteId, headId, systemId, ...use });
+      const by = { cause: 'person', alarmId: null, actorKind: 'user', actorId: userId } as const;
+      const times = { stoppedAtMs: clock.nowMs(), confirmedAtMs, resumedAtMs: null, resumedBy: null };
+      await insertRow(opened.core, 'headStop', { id: uuidv7(), ...at, head, ...by, ...times });
+    }
+    expect((await systems.get(userId, systemId)).status).toMatchObject({ carbonHeads: 2, stoppedHeads: 2, unconfirmedStops: 1 });
   });
 });
 
