@@ -1,5 +1,6 @@
 import type { ExtraDose, Tape } from '#shared/contract/telemetry.ts';
 import { dropTape, type TapePump, type TapeRun, type TapeStop } from '#shared/domain/drop-tape.ts';
+import { schedulePayloadSchema } from '#shared/mqtt/payloads.ts';
 import type { Reader } from '../db/open.ts';
 import { readPlannedVolume } from './planned-volume.ts';
 
@@ -34,14 +35,36 @@ async function readRuns(reader: Reader, { systemId, fromMs, toMs }: TapeRange): 
   return rows;
 }
 
+/** Stops with whether the pump has proved them: by its word, or by the version of the schedule that it says it runs. */
 async function readStops(reader: Reader, { systemId, fromMs, toMs }: TapeRange): Promise<TapeStop[]> {
-  return reader
-    .selectFrom('headStop')
-    .select(['deviceId', 'head', 'cause', 'stoppedAtMs as stoppedMs', 'resumedAtMs as resumedMs'])
-    .where('systemId', '=', systemId)
-    .where('stoppedAtMs', '<', toMs + MARGIN_MS)
-    .where((where) => where.or([where('resumedAtMs', 'is', null), where('resumedAtMs', '>=', fromMs)]))
+  const rows = await reader
+    .selectFrom('headStop as stop')
+    .leftJoin('deviceState as state', 'state.deviceId', 'stop.deviceId')
+    .leftJoin('scheduleVersion as running', (join) =>
+      join.onRef('running.deviceId', '=', 'stop.deviceId').onRef('running.version', '=', 'state.scheduleVersion'),
+    )
+    .select([
+      'stop.deviceId',
+      'stop.head',
+      'stop.cause',
+      'stop.stoppedAtMs as stoppedMs',
+      'stop.resumedAtMs as resumedMs',
+      'stop.confirmedAtMs',
+      'running.body',
+    ])
+    .where('stop.systemId', '=', systemId)
+    .where('stop.stoppedAtMs', '<', toMs + MARGIN_MS)
+    .where((where) => where.or([where('stop.resumedAtMs', 'is', null), where('stop.resumedAtMs', '>=', fromMs)]))
     .execute();
+  return rows.map(({ confirmedAtMs, body, ...stop }) => ({
+    ...stop,
+    isProved: confirmedAtMs !== null || (body !== null && isOffIn(body, stop.head)),
+  }));
+}
+
+function isOffIn(body: string, head: number): boolean {
+  const { heads } = schedulePayloadSchema.parse(JSON.parse(body));
+  return heads.every((one) => one.head !== head || !one.enabled);
 }
 
 async function readPumps(reader: Reader, deviceIds: string[]): Promise<TapePump[]> {

@@ -1,4 +1,7 @@
-/** How a planned portion went. `held` and `interlocked`: a person or an alarm kept the head stopped, or the pump's ceiling refused it. */
+/**
+ * How a planned portion went. `held` and `interlocked`: a person or an alarm keeps the head stopped and the pump has said so,
+ * or the pump's ceiling refused it. `unheard`: nobody knows yet, also under a stop that the pump has not proved.
+ */
 export type SlotMark = 'planned' | 'running' | 'delivered' | 'partial' | 'unheard' | 'missed' | 'held' | 'interlocked';
 
 export interface TapeSlot {
@@ -29,6 +32,8 @@ export interface TapeStop {
   cause: 'person' | 'interlock';
   stoppedMs: number;
   resumedMs: number | null;
+  /** The pump itself has said that the head is stopped, or that it runs a schedule in which the head is off. */
+  isProved: boolean;
 }
 
 /** What is known of a pump's presence now. */
@@ -144,14 +149,23 @@ function markWithoutRun(slot: TapeSlot, { runs, stops, pumps, nowMs }: TapeFacts
   const stop = stops.find(
     (one) => isSameHead(one, slot) && one.stoppedMs <= latestStartMs && (one.resumedMs === null || slot.dueMs <= one.resumedMs),
   );
-  if (stop !== undefined) return stop.cause === 'interlock' ? 'interlocked' : 'held';
+  const pump = pumps.find((one) => one.deviceId === slot.deviceId);
+  if (stop !== undefined) {
+    if (!isKnownToHold(stop, pump, latestStartMs)) return 'unheard';
+    return stop.cause === 'interlock' ? 'interlocked' : 'held';
+  }
   if (!slot.enabled) return null;
   if (nowMs <= latestStartMs + REPORT_GRACE_MS) return 'planned';
-  const pump = pumps.find((one) => one.deviceId === slot.deviceId);
   if (pump === undefined || pump.heardMs < latestStartMs) return 'unheard';
   const isUploading = pump.isOnline && slot.dueMs < pump.changedMs && nowMs - pump.changedMs < UPLOAD_GRACE_MS;
   if (isUploading) return 'unheard';
   return isRefusedByCeiling(slot, runs) ? 'held' : 'missed';
+}
+
+/** A pump that resumed has been heard since; before, only its own word and its presence tell that nothing was given. */
+function isKnownToHold(stop: TapeStop, pump: TapePump | undefined, latestStartMs: number): boolean {
+  if (stop.resumedMs !== null) return true;
+  return stop.isProved && pump !== undefined && (pump.isOnline || pump.heardMs >= latestStartMs);
 }
 
 /** After a step down the portions of before still fill the pump's hour or day, and it refuses until they have aged out. */

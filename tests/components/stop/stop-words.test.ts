@@ -56,7 +56,7 @@ describe('what a resume came to', () => {
 });
 
 describe('the state of dosing', () => {
-  const stop = (at: string, cause: 'person' | 'interlock' = 'person') => ({ cause, alarmId: null, at });
+  const stop = (at: string, cause: 'person' | 'interlock' = 'person') => ({ cause, alarmId: null, at, confirmedAt: null });
 
   it('counts carbon heads only, and says since when the first of them is stopped', () => {
     const state = stopState([

@@ -2,6 +2,7 @@ import { uuidv7 } from 'uuidv7';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { createDoses } from '../../../server/doses/create-doses.ts';
 import { runSourceId } from '../../../server/doses/run-source-id.ts';
+import { query } from '../../../server/db/open.ts';
 import { BadInputError } from '../../../server/errors.ts';
 import { keeper, openPumpScene, type PumpScene } from '../../helpers/pump-scene.ts';
 
@@ -127,12 +128,19 @@ describe('the drop tape', () => {
     ]);
   });
 
-  it('still shows the portions that a stop takes, by who stopped', async () => {
+  it('shows the portions that a stop takes as unheard until the pump has proved it, then by who stopped', async () => {
     await heard();
     scene.publisher.connected.clear();
     scene.clock.set(today + 11 * HOUR_MS);
     await scene.stops.stop(scene.systemId, undefined, keeper);
     scene.clock.set(today + 13 * HOUR_MS);
+    expect(await marks()).toEqual([
+      [10, 'missed'],
+      [12, 'unheard'],
+      [14, 'unheard'],
+      [16, 'unheard'],
+    ]);
+    await scene.state(scene.device.id, [{ head: 1, state: 'stopped' }]);
     expect(await marks()).toEqual([
       [10, 'missed'],
       [12, 'held'],
@@ -145,6 +153,19 @@ describe('the drop tape', () => {
       scene.stops.stopHeads(tx, { siteId, systemId, cause: 'interlock', alarmId: uuidv7(), headConcerned: null, nowMs: clock.nowMs() });
     });
     expect((await marks()).at(-1)).toEqual([16, 'interlocked']);
+  });
+
+  it('takes the version of the schedule that the pump says it runs for the proof of a stop', async () => {
+    await heard();
+    scene.publisher.connected.clear();
+    await scene.stops.stop(scene.systemId, undefined, keeper);
+    const versions = await scene.opened.core.reader.selectFrom('scheduleVersion').select('version').orderBy('version').execute();
+    const running = (scheduleVersion: number | undefined) =>
+      scene.opened.core.writer.commit((tx) => tx.run(query.updateTable('deviceState').set({ scheduleVersion })));
+    await running(versions.at(0)?.version);
+    expect((await marks()).at(-1)).toEqual([16, 'unheard']);
+    await running(versions.at(-1)?.version);
+    expect((await marks()).at(-1)).toEqual([16, 'held']);
   });
 
   it('begins and ends the day where the site does, also when its clocks change', async () => {

@@ -36,6 +36,7 @@ const stop = (more: Partial<TapeStop> = {}): TapeStop => ({
   cause: 'person',
   stoppedMs: dueMs - HOUR_MS,
   resumedMs: null,
+  isProved: true,
   ...more,
 });
 
@@ -149,6 +150,21 @@ describe('a slot without a run', () => {
     expect(markOf({ slots: [slot({ enabled: false })], stops: [given], nowMs: dueMs - HOUR_MS })).toEqual([mark]);
   });
 
+  it('is unheard under a stop that the pump has not proved, or of a pump that is away', () => {
+    const off = { slots: [slot({ enabled: false })] };
+    const wished = stop({ isProved: false });
+    expect(markOf({ ...off, stops: [wished] })).toEqual(['unheard']);
+    expect(markOf({ ...off, stops: [wished], nowMs: dueMs - HOUR_MS })).toEqual(['unheard']);
+    const away = pump({ isOnline: false, heardMs: dueMs + MINUTE_MS - 1 });
+    expect(markOf({ ...off, stops: [stop()], pumps: [away] })).toEqual(['unheard']);
+    expect(markOf({ ...off, stops: [stop()], pumps: [] })).toEqual(['unheard']);
+  });
+
+  it('stays held when the pump proved its stop, was heard after the slot, and went away later', () => {
+    const away = pump({ isOnline: false, heardMs: dueMs + MINUTE_MS });
+    expect(markOf({ slots: [slot({ enabled: false })], stops: [stop()], pumps: [away] })).toEqual(['held']);
+  });
+
   it('is held when the stop came before it could start', () => {
     expect(markOf({ stops: [stop({ stoppedMs: dueMs + MINUTE_MS })] })).toEqual(['held']);
     expect(markOf({ stops: [stop({ stoppedMs: dueMs + MINUTE_MS + 1 })] })).toEqual(['missed']);
@@ -157,7 +173,7 @@ describe('a slot without a run', () => {
   it('is not touched by the stop of another head, or by one that ended before', () => {
     expect(markOf({ stops: [stop({ head: 2 })] })).toEqual(['missed']);
     expect(markOf({ stops: [stop({ resumedMs: dueMs - 1 })] })).toEqual(['missed']);
-    expect(markOf({ slots: [slot({ enabled: false })], stops: [stop({ resumedMs: dueMs })] })).toEqual(['held']);
+    expect(markOf({ slots: [slot({ enabled: false })], stops: [stop({ resumedMs: dueMs, isProved: false })] })).toEqual(['held']);
   });
 
   it('of a disabled head that nobody stopped was never planned', () => {
