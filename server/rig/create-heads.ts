@@ -11,6 +11,8 @@ import { BadInputError, NotFoundError, RuleError } from '../errors.ts';
 import { claimId } from '../requests/claim-id.ts';
 import type { Made } from '../requests/made.ts';
 import type { Schedules } from '../schedules/create-schedules.ts';
+import { stopIfLatched } from '../stops/stop-if-latched.ts';
+import { checkSchedule } from './check-schedule.ts';
 import { checkUse, type HeadUse } from './head-use.ts';
 import { headOf, headRows } from './head-rows.ts';
 
@@ -52,6 +54,7 @@ export function createHeads(core: Core, schedules: Pick<Schedules, 'revise'>): H
     recordChange(tx, { systemId: at.systemId, type: 'plan', atMs: at.fromMs, data: { reason: 'head' } });
     // Which heads give carbon, and of what strength, decides what counts in the limits.
     markDirty(tx, at.systemId, at.fromMs);
+    if (use.kind === 'carbon') stopIfLatched(tx, { siteId: at.siteId, systemId: at.systemId, nowMs: at.fromMs });
   }
 
   return {
@@ -111,6 +114,7 @@ export function createHeads(core: Core, schedules: Pick<Schedules, 'revise'>): H
         const after: HeadUse = { ...before, ...body };
         if (JSON.stringify(after) === JSON.stringify(before)) return;
         checkUse(tx, { siteId, systemId: row.systemId }, after);
+        checkSchedule(before, after, { mlPerDay: row.mlPerDay ?? 0, slotMl: row.slotMl ?? 0 });
         // Should the clock have been set back, the assignments still follow each other.
         const nowMs = Math.max(core.clock.nowMs(), row.assignedMs);
         tx.run(query.updateTable('headAssignment').set({ toMs: nowMs }).where('id', '=', row.assignmentId));

@@ -16,6 +16,7 @@ import { markDirty, recordChange } from '../changes/record-change.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
 import { BadInputError, NotFoundError } from '../errors.ts';
+import { stopIfLatched } from '../stops/stop-if-latched.ts';
 import { checkCeiling } from './check-ceiling.ts';
 import { doseWindow } from './dose-window.ts';
 import { reviseSchedule } from './revise-schedule.ts';
@@ -122,6 +123,7 @@ export function putSchedule(tx: Transaction, { systemId, body, actor, role, nowM
       after: { mlPerDay: entry.mlPerDay, ...layout, overrideReason },
     });
   }
+  stopIfLatched(tx, { siteId: system.siteId, systemId, nowMs });
   for (const deviceId of new Set(doses.map(({ head }) => head.deviceId))) reviseSchedule(tx, { deviceId, cause: 'set', actor, nowMs });
   recordChange(tx, { systemId, type: 'plan', atMs: nowMs, data: { reason: 'schedule' } });
   markDirty(tx, systemId, nowMs);

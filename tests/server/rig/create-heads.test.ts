@@ -39,6 +39,21 @@ const inForce = (atMs: number) => opened.core.writer.commit((tx) => headUseAt(tx
 /** The assignments of all heads that are in force. */
 const openAssignments = () => opened.core.reader.selectFrom('headAssignment').select('smallestMl').where('toMs', 'is', null).execute();
 
+/** A dose of 2 mL a day in 4 portions, as it was set for a head. */
+const addDose = (headId: string) =>
+  insertRow(opened.core, 'headSchedule', {
+    id: uuidv7(),
+    siteId: rig.siteId,
+    headId,
+    mlPerDay: 2,
+    slotMl: 0.5,
+    slotsUtcMin: '[480,600,720,840]',
+    overrideReason: null,
+    fromMs: startMs,
+    toMs: null,
+    actorId: rig.userId,
+  });
+
 describe('a head', () => {
   it('is put to use on the system of its pump, without a schedule and not stopped', async () => {
     const { value } = await create();
@@ -72,6 +87,34 @@ describe('a head', () => {
   ])('is refused with %s', async (_, change, path) => {
     await expect(create(change())).rejects.toMatchObject({ errors: [{ path }] });
     expect(await rig.heads.list(rig.systemId)).toEqual([]);
+  });
+});
+
+describe('under a latched alarm', () => {
+  let alarmId: string;
+
+  beforeEach(async () => {
+    alarmId = uuidv7();
+    const flags = { active: 0, acknowledged: 1, latched: 1, interlock: 1, shelvedUntilMs: null, returnedAtMs: null, closedAtMs: null };
+    const words = { code: 'volume-hour', target: 'system', limitKind: 'hard', priority: 'urgent', unit: 'mL', evidence: '{}' } as const;
+    const rest = { tripKey: 'system', tripSeq: 1, value: 3, limitValue: 2, takenBy: null, arriveAtMs: null, raisedAtMs: startMs };
+    await insertRow(opened.core, 'alarm', { id: alarmId, siteId: rig.siteId, systemId: rig.systemId, ...words, ...flags, ...rest });
+  });
+
+  const orders = () => opened.core.reader.selectFrom('deviceOrder').select(['head', 'do', 'state']).execute();
+
+  it('a head put to carbon use is stopped from the first moment, and its pump told', async () => {
+    const { value } = await create();
+    expect(value.stop).toMatchObject({ cause: 'interlock', alarmId, confirmedAt: null });
+    expect(await orders()).toEqual([{ head: 1, do: 'stop', state: 'waiting' }]);
+  });
+
+  it('a head that becomes one for carbon is stopped, and one for something else is not', async () => {
+    const { value } = await create({ kind: 'other' });
+    expect(value.stop).toBeNull();
+    const changed = await rig.heads.update({ ...rig, headId: value.id, body: { kind: 'carbon' } });
+    expect(changed.stop).toMatchObject({ cause: 'interlock', alarmId });
+    expect(await orders()).toEqual([{ head: 1, do: 'stop', state: 'waiting' }]);
   });
 });
 
@@ -115,22 +158,32 @@ describe('changing what a head is used for', () => {
 
   it('publishes a schedule with the new delivery rate where the head has a dose', async () => {
     const { value } = await create();
-    await insertRow(opened.core, 'headSchedule', {
-      id: uuidv7(),
-      siteId: rig.siteId,
-      headId: value.id,
-      mlPerDay: 2,
-      slotMl: 0.5,
-      slotsUtcMin: '[480,600,720,840]',
-      overrideReason: null,
-      fromMs: startMs,
-      toMs: null,
-      actorId: rig.userId,
-    });
+    await addDose(value.id);
     const changed = await rig.heads.update({ ...rig, headId: value.id, body: { mlPerSecond: 0.8 } });
     expect(changed.schedule).toEqual({ mlPerDay: 2, slotMl: 0.5, slotsUtcMin: [480, 600, 720, 840], since: '2026-03-01T12:00:00.000Z' });
     const { body } = await opened.core.reader.selectFrom('scheduleVersion').select('body').executeTakeFirstOrThrow();
     expect(JSON.parse(body)).toMatchObject({ heads: [{ head: 1, mlPerSecond: 0.8, slotMl: 0.5 }] });
+  });
+
+  it.each<[string, { kind?: 'other' }, () => HeadChange]>([
+    ['larger portions than it is set to give', {}, () => ({ smallestMl: 0.51 })],
+    ['another product, whose ceiling nobody held the dose to', {}, () => ({ productId: null })],
+    ['carbon, where the dose was set for something else', { kind: 'other' }, () => ({ kind: 'carbon' })],
+  ])('to %s is refused while a schedule runs', async (_, use, change) => {
+    const { value } = await create(use);
+    await addDose(value.id);
+    const before = await rig.heads.list(rig.systemId);
+    const body = rigEndpoints.updateHead.body.parse(change());
+    await expect(rig.heads.update({ ...rig, headId: value.id, body })).rejects.toMatchObject({ rule: 'schedule-no-longer-fits' });
+    expect(await rig.heads.list(rig.systemId)).toEqual(before);
+    await opened.core.writer.commit((tx) => tx.run(query.updateTable('headSchedule').set({ mlPerDay: 0, slotMl: 0, slotsUtcMin: '[]' })));
+    await expect(rig.heads.update({ ...rig, headId: value.id, body })).resolves.toMatchObject(change());
+  });
+
+  it('lets the portions of a schedule be as small as the head can give', async () => {
+    const { value } = await create();
+    await addDose(value.id);
+    await expect(rig.heads.update({ ...rig, headId: value.id, body: { smallestMl: 0.5 } })).resolves.toMatchObject({ smallestMl: 0.5 });
   });
 
   it("is refused for foreign references and another site's head", async () => {

@@ -163,6 +163,23 @@ describe('the ceiling', () => {
   });
 });
 
+describe('under a latched alarm', () => {
+  it('gives a head its dose and stops it in the same unit, so that no schedule ever lets it dose', async () => {
+    const { siteId, systemId } = scene;
+    const alarmId = uuidv7();
+    const flags = { active: 0, acknowledged: 1, latched: 1, interlock: 1, shelvedUntilMs: null, returnedAtMs: null, closedAtMs: null };
+    const words = { code: 'volume-hour', target: 'system', limitKind: 'hard', priority: 'urgent', unit: 'mL', evidence: '{}' } as const;
+    const rest = { tripKey: 'system', tripSeq: 1, value: 3, limitValue: 2, takenBy: null, arriveAtMs: null, raisedAtMs: 0 };
+    await scene.insert('alarm', { id: alarmId, siteId, systemId, ...words, ...flags, ...rest });
+    const headId = await scene.addHead({ head: 1 });
+    await put([{ headId, mlPerDay: 2, slots: 4 }]);
+    expect(await scene.openStops()).toMatchObject([{ head: 1, cause: 'interlock', alarmId }]);
+    expect((await versionRows()).map((row) => (JSON.parse(row.body) as { heads: unknown[] }).heads)).toEqual([
+      [expect.objectContaining({ head: 1, enabled: false, slotMl: 0.5 })],
+    ]);
+  });
+});
+
 describe('publishing', () => {
   it('tries again when the broker did not take it, and never publishes an older version after a newer one', async () => {
     const headId = await scene.addHead({ head: 1 });
