@@ -2,6 +2,7 @@ import { uuidv7 } from 'uuidv7';
 import type { z } from 'zod';
 import { type AlarmRule, type alarmRuleBodySchema, alarmCodeSchema } from '#shared/contract/alarms.ts';
 import { type AlarmCode, alarmCodes } from '#shared/domain/alarm-codes.ts';
+import { hardAtCeilingMl } from '#shared/domain/volume-limits.ts';
 import { OPEN_WINDOW_MS } from '#shared/domain/rolling-volume.ts';
 import type { Role } from '#shared/domain/role.ts';
 import { recordAudit } from '../audit/record-audit.ts';
@@ -10,10 +11,12 @@ import type { Core } from '../core.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
 import { NotFoundError } from '../errors.ts';
+import { carbonCeilingMlPerDay } from './carbon-ceiling.ts';
 import { checkInterlockKept, checkRule, checkTarget } from './check-rule.ts';
 import { defaultRule, type EffectiveRule, fromRuleRow } from './effective-rule.ts';
 import { ruleContext } from './evaluate-system.ts';
 import type { AlarmRuleModule, RuleContext, Standing } from './finding.ts';
+import { roundMl } from './volume-evidence.ts';
 
 export type AlarmRuleBody = z.output<typeof alarmRuleBodySchema>;
 
@@ -45,9 +48,9 @@ export function createAlarmRuleService({ writer, clock }: Core, modules: readonl
     return {
       ...{ code, target, enabled, priority, soft, hard, unit, interlock, onDelaySeconds, offDelaySeconds, deadband },
       isDefault: isSame(rule, defaultRule(code, target)),
-      effectiveSoft: standing?.soft ?? null,
-      effectiveHard: standing?.hard ?? null,
-      current: standing?.current ?? null,
+      effectiveSoft: shownMl(standing?.soft),
+      effectiveHard: shownMl(standing?.hard),
+      current: shownMl(standing?.current),
     };
   }
 
@@ -71,8 +74,11 @@ export function createAlarmRuleService({ writer, clock }: Core, modules: readonl
         const inherited = row ?? ruleRow(tx, systemId, code, 'system');
         const before = inherited === undefined ? defaultRule(code, body.target) : fromRuleRow(inherited, code);
         const rule = fromBody(code, body, (row?.revision ?? 0) + 1);
-        checkRule(rule, body, standingOf(context, { ...rule, soft: null, hard: null }));
-        checkInterlockKept(before, rule, by.role);
+        const planned = standingOf(context, { ...rule, soft: null, hard: null });
+        checkRule(rule, body, planned);
+        checkInterlockKept(before, rule, by.role, {
+          mostHard: planned?.hard ?? hardFromCeiling(code, carbonCeilingMlPerDay(tx, systemId)),
+        });
         if (row !== undefined && isSame(before, rule)) return present(context, before);
         save(tx, { rule, id: row?.id ?? uuidv7(), siteId: context.siteId, systemId, userId: by.userId, nowMs: context.nowMs });
         recordAudit(tx, {
@@ -89,6 +95,16 @@ export function createAlarmRuleService({ writer, clock }: Core, modules: readonl
         return present(context, rule);
       }),
   };
+}
+
+/** Only volumes are counted and limited by number. */
+const shownMl = (ml: number | null | undefined) => (ml === null || ml === undefined ? null : roundMl(ml));
+
+/** Without a schedule the label still tells how much is too much in a day or a week. */
+function hardFromCeiling(code: AlarmCode, ceilingMlPerDay: number | null): number | null {
+  if (ceilingMlPerDay === null) return null;
+  if (code === 'volume-day') return hardAtCeilingMl('day', ceilingMlPerDay);
+  return code === 'volume-week' ? hardAtCeilingMl('week', ceilingMlPerDay) : null;
 }
 
 function ruleRow(tx: Transaction, systemId: string, code: AlarmCode, target: string) {

@@ -35,23 +35,49 @@ export function checkRule(rule: EffectiveRule, given: { unit?: string | undefine
 
 const shown = (value: number) => String(Math.round(value * 1000) / 1000);
 
+/** The most that a hard limit may be without an owner: what comes from the plan, or what the label's dose comes to. */
+export interface KeptUnder {
+  /** In the unit of the rule; null when nothing tells. */
+  mostHard: number | null;
+}
+
+/** Numbers closer than this are the same: limits are shown rounded to it. */
+const SAME = 1e-6;
+const DEADBAND_SHARE = 0.1;
+
 /**
- * Only an owner may take the teeth out of an alarm that stops pumps: switch it off, let it stop nothing, delay it, or
- * have it press less.
+ * Only an owner may take the teeth out of an alarm that stops pumps: switch it off, let it stop nothing, delay it, have it
+ * press less, put its hard limit above what the plan or the label gives, or let it hang on by a wide deadband.
  * @throws {RuleError} `interlock-owner-only`
  */
-export function checkInterlockKept(before: EffectiveRule, after: EffectiveRule, role: Role): void {
+export function checkInterlockKept(before: EffectiveRule, after: EffectiveRule, role: Role, { mostHard }: KeptUnder): void {
   if (!alarmRuleDefaults[after.code].interlock || isAtLeast(role, 'owner')) return;
   const loosened =
     (before.enabled && !after.enabled) ||
     (before.interlock && !after.interlock) ||
     after.onDelaySeconds > before.onDelaySeconds ||
     (comparePriority(after.priority, before.priority) < 0 && comparePriority(after.priority, mainPriority(after.code)) < 0);
-  if (!loosened) return;
-  throw new RuleError(
-    'interlock-owner-only',
-    'This alarm stops the pumps. Only an owner can switch it off, delay it, lower it or let it stop nothing',
-  );
+  if (loosened) {
+    throw new RuleError(
+      'interlock-owner-only',
+      'This alarm stops the pumps. Only an owner can switch it off, delay it, lower it or let it stop nothing',
+    );
+  }
+  const isHardKept = after.hard === before.hard;
+  if (!isHardKept && after.hard !== null && mostHard !== null && after.hard > mostHard + SAME) {
+    throw new RuleError(
+      'interlock-owner-only',
+      `This alarm stops the pumps. Only an owner can set its hard limit above ${shown(mostHard)} ${after.unit}, which the plan and the label give`,
+    );
+  }
+  const hard = after.hard ?? mostHard;
+  const isDeadbandKept = isHardKept && after.deadband === before.deadband;
+  if (!isDeadbandKept && hard !== null && after.deadband > DEADBAND_SHARE * hard + SAME) {
+    throw new RuleError(
+      'interlock-owner-only',
+      `This alarm stops the pumps. Only an owner can set its deadband above a tenth of the hard limit, ${shown(DEADBAND_SHARE * hard)} ${after.unit}`,
+    );
+  }
 }
 
 /** @throws {BadInputError} for a target that the code does not take, or that is no part of the system. */

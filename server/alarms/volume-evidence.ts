@@ -7,6 +7,7 @@ const MOST_DOSES = 200;
 const iso = (ms: number) => new Date(ms).toISOString();
 /** Takes off the dust of binary sums. */
 export const roundMl = (ml: number) => Math.round(ml * 1e6) / 1e6;
+const rounded = (ml: number | null) => (ml === null ? null : roundMl(ml));
 
 /** What a volume alarm rests on: the window, what was planned in it, and every dose that counts in it. */
 export function volumeEvidence(
@@ -23,10 +24,10 @@ export function volumeEvidence(
     windowTo: iso(endMs),
     givenMl: roundMl(counted.givenMl),
     plannedMl: roundMl(counted.plannedMl),
-    largestSlotMl: counted.largestSlotMl,
-    ceilingMlPerDay: counted.ceilingMlPerDay,
-    softMl: limits.softMl,
-    hardMl: limits.hardMl,
+    largestSlotMl: rounded(counted.largestSlotMl),
+    ceilingMlPerDay: rounded(counted.ceilingMlPerDay),
+    softMl: rounded(limits.softMl),
+    hardMl: rounded(limits.hardMl),
     givenOnStoppedHeadsMl: roundMl(counted.stoppedMl),
     scheduleVersions: [...versions.values()].map(({ deviceId, version }) => ({ deviceId, version })),
     doses: doses.slice(-MOST_DOSES),

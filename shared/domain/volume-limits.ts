@@ -46,14 +46,25 @@ export function volumeLimits(window: VolumeWindow, planned: PlannedWindow, numbe
   const softMl = numbers.softMl ?? fromPlan.softMl;
   if (softMl === null || hardMl === null || softMl < hardMl) return { softMl, hardMl };
   const roomMl = hardMl - planned.plannedMl;
-  return { softMl: roomMl > 0 ? planned.plannedMl + roomMl / 2 : 0.9 * hardMl, hardMl };
+  const halfwayMl = planned.plannedMl + roomMl / 2;
+  // Of two numbers a hair apart halfway is one of them.
+  return { softMl: roomMl > 0 && halfwayMl < hardMl ? halfwayMl : 0.9 * hardMl, hardMl };
+}
+
+/**
+ * The hard limit that a ceiling alone gives: a quarter above it, mL; null for the hour, where the ceiling does not apply.
+ * @param ceilingMlPerDay the label's dose or the written override, mL per day.
+ */
+export function hardAtCeilingMl(window: VolumeWindow, ceilingMlPerDay: number): number | null {
+  const days = ceilingDays[window];
+  return days === null ? null : 1.25 * ceilingMlPerDay * days;
 }
 
 function limitsFromPlan(window: VolumeWindow, { plannedMl, largestSlotMl, ceilingMlPerDay }: PlannedWindow): LimitNumbers {
   if (largestSlotMl === null || largestSlotMl <= 0) return { softMl: null, hardMl: null };
   const softMl = plannedMl + Math.max(largestSlotMl, 0.1 * plannedMl);
   const hardMl = plannedMl + Math.max(2 * largestSlotMl, 0.25 * plannedMl);
-  const days = ceilingDays[window];
-  if (days === null || ceilingMlPerDay === null) return { softMl, hardMl };
-  return { softMl, hardMl: Math.min(hardMl, Math.max(1.25 * ceilingMlPerDay * days, softMl + largestSlotMl / 10)) };
+  const atCeilingMl = ceilingMlPerDay === null ? null : hardAtCeilingMl(window, ceilingMlPerDay);
+  if (atCeilingMl === null) return { softMl, hardMl };
+  return { softMl, hardMl: Math.min(hardMl, Math.max(atCeilingMl, softMl + largestSlotMl / 10)) };
 }

@@ -38,6 +38,14 @@ describe('the rules of a system', () => {
     expect(day?.current).toBeCloseTo(6, 9);
   });
 
+  it('show volumes without the dust of binary sums', async () => {
+    await bench.schedule({ slotMl: 0.1, fromMs: bench.clock.nowMs() - 8 * DAY });
+    const rules = await bench.alarms.rules.list(bench.systemId);
+    const numbers = rules.flatMap((rule) => [rule.effectiveSoft, rule.effectiveHard, rule.current]).filter((value) => value !== null);
+    expect(numbers.length).toBeGreaterThan(6);
+    for (const value of numbers) expect(value).toBe(Number(value.toFixed(6)));
+  });
+
   it('cannot tell limits without a schedule', async () => {
     const bare = await openBench();
     const day = (await bare.alarms.rules.list(bare.systemId)).find((rule) => rule.code === 'volume-day');
@@ -57,7 +65,7 @@ describe('setting a limit', () => {
     await bench.alarms.settled();
     expect((await bench.open()).map((alarm) => `${alarm.code} ${alarm.limitKind}`)).toEqual(['volume-day hard', 'volume-day soft']);
     expect(bench.port.stops).toHaveLength(1);
-    await put('volume-day', { soft: 7, hard: 8 });
+    await put('volume-day', { soft: 7, hard: 8 }, 'owner');
     const revisions = await bench.opened.core.reader.selectFrom('alarmRuleRevision').selectAll().orderBy('revision').execute();
     expect(revisions.map((revision) => revision.revision)).toEqual([1, 2]);
     const trail = await bench.opened.core.reader.selectFrom('audit').selectAll().where('entity', '=', 'alarmRule').execute();
@@ -65,14 +73,14 @@ describe('setting a limit', () => {
   });
 
   it('twice to the same values changes nothing the second time', async () => {
-    const first = await put('volume-day', { soft: 7, hard: 8 });
-    expect(await put('volume-day', { soft: 7, hard: 8 })).toEqual(first);
+    const first = await put('volume-day', { soft: 7, hard: 7.4 });
+    expect(await put('volume-day', { soft: 7, hard: 7.4 })).toEqual(first);
     const revisions = await bench.opened.core.reader.selectFrom('alarmRuleRevision').select('revision').execute();
     expect(revisions).toHaveLength(1);
   });
 
   it('back to the plan is the default again', async () => {
-    await put('volume-day', { soft: 7, hard: 8 });
+    await put('volume-day', { soft: 7, hard: 7.4 });
     expect(await put('volume-day', {})).toMatchObject({ isDefault: true, effectiveSoft: 6.6 });
   });
 
@@ -108,6 +116,39 @@ describe('an interlock', () => {
       await expect(put('run-too-long', body)).rejects.toThrow(/Only an owner/);
     }
     expect(await put('volume-day', { interlock: false }, 'owner')).toMatchObject({ interlock: false });
+  });
+
+  it('takes no hard limit above the one that the plan and the label give, unless from an owner', async () => {
+    await expect(put('volume-day', { hard: 7.51 })).rejects.toMatchObject({
+      rule: 'interlock-owner-only',
+      message: expect.stringContaining('7.5 mL') as string,
+    });
+    expect(await put('volume-day', { hard: 7.5 })).toMatchObject({ effectiveHard: 7.5 });
+    await put('volume-day', { hard: 9 }, 'owner');
+    expect(await put('volume-day', { hard: 9, offDelaySeconds: 5 })).toMatchObject({ hard: 9, offDelaySeconds: 5 });
+    await expect(put('volume-day', { hard: 9.5 })).rejects.toMatchObject({ rule: 'interlock-owner-only' });
+  });
+
+  it('is held to the label where there is no plan', async () => {
+    const bare = await openBench();
+    const by = { userId: bare.userId, role: 'keeper' } as const;
+    const set = (code: AlarmCode, hard: number) => bare.alarms.rules.put(bare.systemId, code, alarmRuleBodySchema.parse({ hard }), by);
+    // 2 mL per 100 L and day in 420 L, and a quarter more.
+    await expect(set('volume-day', 10.6)).rejects.toMatchObject({ rule: 'interlock-owner-only' });
+    expect(await set('volume-day', 10.5)).toMatchObject({ hard: 10.5 });
+    await expect(set('volume-week', 73.6)).rejects.toMatchObject({ rule: 'interlock-owner-only' });
+    expect(await set('volume-hour', 50)).toMatchObject({ hard: 50 });
+    await bare.close();
+  });
+
+  it('takes no deadband above a tenth of its hard limit, unless from an owner', async () => {
+    await expect(put('volume-day', { deadband: 0.76 })).rejects.toMatchObject({
+      rule: 'interlock-owner-only',
+      message: expect.stringContaining('0.75 mL') as string,
+    });
+    expect(await put('volume-day', { deadband: 0.75 })).toMatchObject({ deadband: 0.75 });
+    await expect(put('volume-day', { soft: 4, hard: 5, deadband: 0.75 })).rejects.toMatchObject({ rule: 'interlock-owner-only' });
+    expect(await put('volume-day', { deadband: 3 }, 'owner')).toMatchObject({ deadband: 3 });
   });
 
   it('that an owner switched off goes off without stopping anything', async () => {

@@ -30,7 +30,7 @@ const carbonUse = () => ({
   mlPerSecond: 1.1,
   smallestMl: 0.2,
 });
-type HeadChange = Partial<Omit<ReturnType<typeof carbonUse>, 'reservoirId'>> & { id?: string; reservoirId?: string | null };
+type HeadChange = Partial<Parameters<RigBench['heads']['create']>[0]['body']>;
 const create = (change: HeadChange = {}) => rig.heads.create({ ...rig, body: { ...carbonUse(), ...change } });
 
 /** What a run of the head counts as that began at a time. */

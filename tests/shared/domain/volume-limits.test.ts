@@ -45,6 +45,12 @@ describe('the volume limits of a schedule', () => {
     }
   });
 
+  it('have soft under hard also where a number is only a hair above the plan', () => {
+    const planned = { plannedMl: 0.0010000000000000033, largestSlotMl: 0.001, ceilingMlPerDay: null };
+    const { softMl, hardMl } = volumeLimits('hour', planned, { softMl: null, hardMl: 0.0010000000000000035 });
+    expect(hardMl).toBeGreaterThan(softMl ?? Number.POSITIVE_INFINITY);
+  });
+
   it('always have soft under hard, whatever the plan and the numbers', () => {
     const numbers = fc.record({ softMl: fc.option(ml), hardMl: fc.option(ml) });
     fc.assert(
