@@ -35,7 +35,9 @@ export function HeadsPart({ system, mayChange }: RigPartProps) {
           <div className="item-head">
             <Text bold>{headName(head)}</Text>
             {head.stop === null ? null : (
-              <StateWord mark="stopped">{head.stop.cause === 'interlock' ? 'stopped by an alarm' : 'stopped'}</StateWord>
+              <StateWord mark={head.stop.confirmedAt === null ? 'due' : 'stopped'}>
+                {`${head.stop.confirmedAt === null ? 'asked to stop, not confirmed' : 'stopped'}${head.stop.cause === 'interlock' ? ', by an alarm' : ''}`}
+              </StateWord>
             )}
           </div>
           <Text>{head.kind === 'carbon' ? `Carbon: ${productName(head)}, from ${bottleName(head)}.` : 'Not carbon.'}</Text>

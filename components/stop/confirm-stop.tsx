@@ -16,12 +16,16 @@ export function ConfirmStop({ heads, onStop, onCancel }: { heads: readonly Head[
         {heads.map((head) => (
           <li key={head.id}>
             {headName(head)}
-            {head.stop === null ? '' : ' (stopped already)'}
+            {head.stop === null
+              ? ''
+              : head.stop.confirmedAt === null
+                ? ' (asked already, no answer yet)'
+                : ' (stopped at the pump already)'}
           </li>
         ))}
       </ul>
       <Text variant="note" soft>
-        It stays stopped until a keeper or the owner resumes.
+        It stays stopped until a keeper or the owner resumes. Heads that nobody registered here are asked too.
       </Text>
       <div className="stop-panel-buttons">
         <Button ref={now} kind="primary" onPress={onStop}>

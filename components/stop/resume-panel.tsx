@@ -12,18 +12,22 @@ import { headName, resumeLine } from './stop-words.ts';
 export function ResumePanel({
   system,
   heads,
+  allHeads,
   latched,
   onClose,
 }: {
   system: System;
+  /** The stopped ones. */
   heads: readonly Head[];
+  /** To name those that dose again by now. */
+  allHeads: readonly Head[];
   latched: boolean;
   onClose: () => void;
 }) {
   const resume = useResume(system.id);
   const first = useRef<HTMLButtonElement>(null);
   useEffect(() => first.current?.focus(), []);
-  const lines = resume.data?.orders.map((order) => resumeLine(order, heads)) ?? [];
+  const lines = resume.data?.orders.map((order) => resumeLine(order, allHeads)) ?? [];
   return (
     <section className="stop-panel" aria-label="Resume dosing" onKeyDown={(event) => event.key === 'Escape' && onClose()}>
       {latched ? (

@@ -2,9 +2,10 @@ import type { Device } from '#shared/contract/devices.ts';
 import type { Head } from '#shared/contract/rig.ts';
 import type { useStop } from '../../hooks/use-stop.ts';
 import { problemFrom, problemSentence } from '../../lib/api-problem.ts';
+import { pullThePlug } from '../../lib/codes/order-words.ts';
 import { Button } from '../ui/button.tsx';
 import { Text } from '../ui/text.tsx';
-import { pullThePlug, stopLine } from './stop-words.ts';
+import { stopLine } from './stop-words.ts';
 
 export interface StopOutcomeProps {
   stop: ReturnType<typeof useStop>;

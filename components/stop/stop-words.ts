@@ -1,10 +1,8 @@
 import type { OrderOutcome } from '#shared/contract/control.ts';
 import type { Device } from '#shared/contract/devices.ts';
 import type { Head } from '#shared/contract/rig.ts';
-import { refusalWords } from '../../lib/codes/order-words.ts';
-import { formatClockWithSeconds } from '../../lib/format/time.ts';
-
-export const pullThePlug = "Pull the pump's plug; dry hands first.";
+import { pullThePlug, refusalWords } from '../../lib/codes/order-words.ts';
+import { formatClockWithSeconds, formatNear, inZone } from '../../lib/format/time.ts';
 
 /** `Doser, head 1` */
 export function headName(head: Pick<Head, 'deviceName' | 'head'>): string {
@@ -35,7 +33,8 @@ export interface StopLine {
 export function stopLine(order: OrderOutcome, heads: readonly Head[], devices: readonly Device[], timeZone: string): StopLine {
   const known = heads.find((head) => head.deviceId === order.deviceId && head.head === order.head);
   const base = { orderId: order.id, head: known === undefined ? `Head ${order.head}` : headName(known) };
-  const stoppedAt = order.outcome === 'done' ? order.at : saidStoppedAt(devices, order.deviceId, order.head);
+  const saidAt = saidStoppedAt(devices, order.deviceId, order.head);
+  const stoppedAt = order.outcome === 'done' ? order.at : saidAt === null ? null : (known?.stop?.confirmedAt ?? saidAt);
   if (order.outcome === 'done' || stoppedAt !== null) {
     const at = stoppedAt === null ? '' : `, ${formatClockWithSeconds(stoppedAt, timeZone)}`;
     return { ...base, sentence: `Stopped at the pump${at}`, isStopped: true };
@@ -67,21 +66,41 @@ export function resumeLine(order: OrderOutcome, heads: readonly Head[]): StopLin
   }
 }
 
+/** `14:02:07` today: a stop is told to the second while it is fresh; else as any other time near now. */
+function stopClock(at: string, timeZone: string, nowMs: number): string {
+  const isToday = inZone(at, timeZone).hasSame(inZone(nowMs, timeZone), 'day');
+  return isToday ? formatClockWithSeconds(at, timeZone) : formatNear(at, timeZone, nowMs);
+}
+
+/** What a stopped head's own pump said of it; the wish alone is never said as a stop. Null for a head that is not stopped. */
+export function stoppedSentence({ stop }: Pick<Head, 'stop'>, timeZone: string, nowMs: number): string | null {
+  if (stop === null) return null;
+  if (stop.confirmedAt !== null) return `Stopped at the pump, ${stopClock(stop.confirmedAt, timeZone, nowMs)}`;
+  return `Asked at ${formatNear(stop.at, timeZone, nowMs)}, no answer yet. ${pullThePlug}`;
+}
+
 export interface StopState {
-  /** Carbon heads kept stopped, and since when the longest of them. */
+  /** Carbon heads kept stopped, and those of them whose pump has not said so. */
   stopped: Head[];
-  running: Head[];
-  since: string | null;
+  unconfirmed: Head[];
 }
 
 /** Which carbon heads are stopped. Whether a latch still holds them is the system's to say: a reset releases it before the resume. */
 export function stopState(heads: readonly Head[]): StopState {
-  const carbon = carbonHeads(heads);
-  const stopped = carbon.filter((head) => head.stop !== null);
-  const times = stopped.map((head) => head.stop?.at ?? '').sort();
-  return {
-    stopped,
-    running: carbon.filter((head) => head.stop === null),
-    since: times[0] ?? null,
-  };
+  const stopped = carbonHeads(heads).filter((head) => head.stop !== null);
+  return { stopped, unconfirmed: stopped.filter((head) => head.stop?.confirmedAt === null) };
+}
+
+/** One line a stopped head, those without an answer first; named where the system has more than one. */
+export function stopLines(
+  heads: readonly Head[],
+  timeZone: string,
+  nowMs: number,
+): { headId: string; words: string; isConfirmed: boolean }[] {
+  const { stopped, unconfirmed } = stopState(heads);
+  const isOne = carbonHeads(heads).length === 1;
+  return [...unconfirmed, ...stopped.filter((head) => !unconfirmed.includes(head))].map((head) => {
+    const sentence = stoppedSentence(head, timeZone, nowMs) ?? '';
+    return { headId: head.id, words: isOne ? sentence : `${headName(head)}: ${sentence}`, isConfirmed: head.stop?.confirmedAt !== null };
+  });
 }

@@ -1,4 +1,5 @@
 import type { System, SystemStatus } from '#shared/contract/systems.ts';
+import { pullThePlug } from '../codes/order-words.ts';
 import { formatMl, formatMlOf } from '../format/millilitres.ts';
 import { defaultBands, formatBand, formatNutrient, nutrientNames, placeInBand, type Nutrient } from '../format/nutrient.ts';
 import { ageWords, formatNear } from '../format/time.ts';
@@ -44,8 +45,14 @@ export function nutrientsSentence(status: SystemStatus, nowMs: number): string {
   return `${nutrientSentence('nitrate', status, nowMs)} ${nutrientSentence('phosphate', status, nowMs)}`;
 }
 
+/** A stop is said as one only when the pumps have said so themselves. */
 function stoppedSentence(status: SystemStatus): string | null {
   if (status.stoppedHeads === 0) return null;
+  if (status.unconfirmedStops > 0) {
+    const asked = `Dosing is asked to stop${status.latched ? ' by an alarm' : ''}`;
+    const silent = status.unconfirmedStops < status.stoppedHeads ? `${status.unconfirmedStops} of ${status.stoppedHeads} heads are` : null;
+    return `${asked}; ${silent === null ? 'the pump has not confirmed it' : `${silent} not confirmed`}. ${pullThePlug}`;
+  }
   const all = status.stoppedHeads >= status.carbonHeads;
   const what = all ? 'Dosing is stopped' : `${status.stoppedHeads} of ${status.carbonHeads} carbon heads are stopped`;
   return status.latched ? `${what} by an alarm.` : `${what}.`;

@@ -1,10 +1,12 @@
 import { QueryClient, QueryClientProvider } from '@tanstack/react-query';
 import { act, cleanup, fireEvent, render, screen } from '@testing-library/react';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
+import type { Head } from '#shared/contract/rig.ts';
+import type { System } from '#shared/contract/systems.ts';
 import { StopControl } from '../../../components/stop/stop-control.tsx';
 import { keys } from '../../../hooks/keys.ts';
 import { session } from '../../../lib/session.ts';
-import { makeDevice, makeHead, makeSystem, testId } from '../../helpers/client-fixtures.ts';
+import { makeDevice, makeHead, makeStatus, makeSystem, testId } from '../../helpers/client-fixtures.ts';
 
 vi.mock('expo-router', () => ({ Link: ({ children }: { children: unknown }) => children }));
 
@@ -27,6 +29,17 @@ const outcome = (text: 'done' | 'no-answer') =>
     ],
   });
 
+function show(shown: System, first: Head): void {
+  const client = new QueryClient({ defaultOptions: { queries: { staleTime: Infinity } } });
+  client.setQueryData(keys.heads(shown.id), { items: [first, makeHead({ id: testId(51), head: 2, kind: 'other' })], next: null });
+  client.setQueryData(keys.devices(shown.id), { items: [makeDevice()], next: null });
+  render(
+    <QueryClientProvider client={client}>
+      <StopControl system={shown} />
+    </QueryClientProvider>,
+  );
+}
+
 beforeEach(() => {
   vi.useFakeTimers();
   answerStop = () => outcome('done');
@@ -34,14 +47,7 @@ beforeEach(() => {
   asked.mockImplementation((address) => Promise.resolve(answer(address)));
   vi.stubGlobal('fetch', asked);
   session.accept({ accessToken: 'token', expiresIn: 900, user: { id: testId(1000), email: 'o@ternlane.example', name: 'Owner' } });
-  const client = new QueryClient({ defaultOptions: { queries: { staleTime: Infinity } } });
-  client.setQueryData(keys.heads(system.id), { items: [makeHead(), makeHead({ id: testId(51), head: 2, kind: 'other' })], next: null });
-  client.setQueryData(keys.devices(system.id), { items: [makeDevice()], next: null });
-  render(
-    <QueryClientProvider client={client}>
-      <StopControl system={system} />
-    </QueryClientProvider>,
-  );
+  show(system, makeHead());
 });
 afterEach(() => {
   cleanup();
@@ -137,5 +143,44 @@ describe('what it says', () => {
     };
     await stopNow();
     expect(screen.getByRole('alert')).toHaveTextContent(/No connection to Steadfall.*Pull the pump's plug/);
+  });
+});
+
+describe('while dosing is stopped', () => {
+  const stopped = (confirmedAt: string | null) =>
+    makeHead({ stop: { cause: 'person', alarmId: null, at: '2026-03-08T14:02:00Z', confirmedAt } });
+  const again = (shown: System, head: Head) => {
+    cleanup();
+    show(shown, head);
+  };
+  const resume = () => screen.queryByRole('button', { name: 'Resume' });
+
+  it('stays in reach, and the pump that confirmed lets a keeper resume', async () => {
+    again(system, stopped('2026-03-08T14:02:07Z'));
+    expect(screen.getByRole('status')).toHaveTextContent(/^Stopped at the pump, /);
+    expect(resume()).toBeInTheDocument();
+    fireEvent.click(button());
+    fireEvent.click(screen.getByRole('button', { name: 'Stop now' }));
+    await wait(100);
+    expect(stops()).toHaveLength(1);
+  });
+
+  it('offers no resume, and says no stop, before the pump has answered', () => {
+    again(system, stopped(null));
+    expect(screen.getByRole('status')).toHaveTextContent(/^Asked at .*, no answer yet\. Pull the pump's plug; dry hands first\.$/);
+    expect(resume()).not.toBeInTheDocument();
+    expect(button()).toBeInTheDocument();
+  });
+
+  it('leads to the alarms while one of them holds it', () => {
+    again(makeSystem({ status: makeStatus({ latched: true }) }), stopped('2026-03-08T14:02:07Z'));
+    expect(screen.getByText('To the alarms')).toBeInTheDocument();
+    expect(resume()).not.toBeInTheDocument();
+  });
+
+  it('offers no resume to a sitter', () => {
+    again(makeSystem({ role: 'sitter' }), stopped('2026-03-08T14:02:07Z'));
+    expect(screen.getByText('A keeper or the owner resumes.')).toBeInTheDocument();
+    expect(resume()).not.toBeInTheDocument();
   });
 });

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { OrderOutcome } from '#shared/contract/control.ts';
-import { resumeLine, stopLine, stopState } from '../../../components/stop/stop-words.ts';
-import { makeDevice, makeHead, testId } from '../../helpers/client-fixtures.ts';
+import { resumeLine, stopLine, stopLines, stopState } from '../../../components/stop/stop-words.ts';
+import { makeDevice, makeHead, nowMs, testId } from '../../helpers/client-fixtures.ts';
 
 const order = (changed: Partial<OrderOutcome>): OrderOutcome => ({
   id: testId(60),
@@ -56,15 +56,38 @@ describe('what a resume came to', () => {
 });
 
 describe('the state of dosing', () => {
-  const stop = (at: string, cause: 'person' | 'interlock' = 'person') => ({ cause, alarmId: null, at, confirmedAt: null });
+  const asked = '2026-03-08T13:15:00Z';
+  const stop = (confirmedAt: string | null) => ({ cause: 'person' as const, alarmId: null, at: asked, confirmedAt });
+  const lines = (...heads: Parameters<typeof makeHead>[0][]) => stopLines(heads.map(makeHead), 'Europe/Lisbon', nowMs);
 
-  it('counts carbon heads only, and says since when the first of them is stopped', () => {
+  it('counts carbon heads only, and which of them the pump has not confirmed', () => {
     const state = stopState([
-      makeHead({ id: 'a', stop: stop('2026-03-08T13:00:00Z') }),
-      makeHead({ id: 'b', stop: stop('2026-03-08T12:00:00Z') }),
+      makeHead({ id: 'a', stop: stop('2026-03-08T13:15:01Z') }),
+      makeHead({ id: 'b', stop: stop(null) }),
       makeHead({ id: 'c' }),
-      makeHead({ id: 'd', kind: 'other' }),
+      makeHead({ id: 'd', kind: 'other', stop: stop(null) }),
     ]);
-    expect([state.stopped.length, state.running.length, state.since]).toEqual([2, 1, '2026-03-08T12:00:00Z']);
+    expect([state.stopped.map(({ id }) => id), state.unconfirmed.map(({ id }) => id)]).toEqual([['a', 'b'], ['b']]);
+  });
+
+  it('is what the pump said, when it said it', () => {
+    expect(lines({ stop: stop('2026-03-08T14:02:07Z') })).toEqual([
+      { headId: testId(50), words: 'Stopped at the pump, 14:02:07', isConfirmed: true },
+    ]);
+    expect(lines({ stop: stop('2026-03-07T14:02:07Z') })[0]?.words).toBe('Stopped at the pump, Saturday 14:02');
+  });
+
+  it('is a wish while the pump has not answered, and says what to do', () => {
+    expect(lines({ stop: stop(null) })).toEqual([
+      { headId: testId(50), words: "Asked at 13:15, no answer yet. Pull the pump's plug; dry hands first.", isConfirmed: false },
+    ]);
+  });
+
+  it('names the heads where there are more, those without an answer first', () => {
+    const two = lines({ id: 'a', stop: stop('2026-03-08T14:02:07Z') }, { id: 'b', head: 2, stop: stop(null) }, { id: 'c', head: 3 });
+    expect(two.map(({ words }) => words)).toEqual([
+      "Doser, head 2: Asked at 13:15, no answer yet. Pull the pump's plug; dry hands first.",
+      'Doser, head 1: Stopped at the pump, 14:02:07',
+    ]);
   });
 });
