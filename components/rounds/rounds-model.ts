@@ -1,5 +1,5 @@
 import type { System } from '#shared/contract/systems.ts';
-import { rankOf, type Rank } from '../../lib/sentences/system-rank.ts';
+import { type SystemRank, systemRank } from '#shared/domain/system-rank.ts';
 import { systemSentence, type StaleSince } from '../../lib/sentences/system-sentence.ts';
 import type { StateMark } from '../ui/state-word.tsx';
 
@@ -8,23 +8,26 @@ export interface Round {
   name: string;
   siteName: string;
   sentence: string;
-  rank: Rank;
+  rank: SystemRank;
   mark: StateMark;
   word: string;
 }
 
-const marks: Record<Rank, { mark: StateMark; word: string }> = {
+const marks: Record<SystemRank, { mark: StateMark; word: string }> = {
   urgent: { mark: 'urgent', word: 'urgent' },
-  alarm: { mark: 'due', word: 'alarm' },
+  latched: { mark: 'due', word: 'to be reset' },
+  high: { mark: 'due', word: 'alarm' },
   unheard: { mark: 'unknown', word: 'unheard' },
+  alarm: { mark: 'due', word: 'alarm' },
   due: { mark: 'due', word: 'due' },
   quiet: { mark: 'fine', word: 'quiet' },
 };
 
 /** What the list says of a system. Nothing is quiet while we cannot tell. */
 export function roundOf(system: System, nowMs: number, staleSinceMs: StaleSince): Round {
-  const rank = rankOf(system.status, nowMs);
-  const shown = staleSinceMs !== null && rank !== 'urgent' ? marks.unheard : marks[rank];
+  const rank = systemRank(system.status, nowMs);
+  // An urgent alarm and a latch do not go away by themselves.
+  const shown = staleSinceMs !== null && rank !== 'urgent' && rank !== 'latched' ? marks.unheard : marks[rank];
   return {
     id: system.id,
     name: system.name,

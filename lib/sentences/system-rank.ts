@@ -1,35 +1,24 @@
-import type { SystemStatus } from '#shared/contract/systems.ts';
+import { type SystemRank, systemRanks } from '#shared/domain/system-rank.ts';
 
-/** How a system stands in rounds, from the worst. */
-export const ranks = ['urgent', 'alarm', 'unheard', 'due', 'quiet'] as const;
-export type Rank = (typeof ranks)[number];
-
-const weekMs = 7 * 86_400_000;
-
-/** `urgent`: an urgent alarm or a latch. `due`: dosing without a test of both nutrients in the last week, or stopped heads. */
-export function rankOf(status: SystemStatus, nowMs: number): Rank {
-  if (status.worstPriority === 'urgent' || status.latched) return 'urgent';
-  if (status.openAlarms > 0 && status.worstPriority === 'high') return 'alarm';
-  if (status.offlineDevices > 0) return 'unheard';
-  if (status.openAlarms > 0) return 'alarm';
-  const testIsDue = [status.nitrate, status.phosphate].some((test) => test === null || nowMs - Date.parse(test.at) > weekMs);
-  return testIsDue || status.stoppedHeads > 0 ? 'due' : 'quiet';
-}
-
-const rankWords: Record<Rank, [one: string, many: string]> = {
+/** What a rank is called on a screen: of one system, and of many. */
+export const rankWords: Record<SystemRank, readonly [one: string, many: string]> = {
   urgent: ['urgent', 'urgent'],
-  alarm: ['with an alarm', 'with alarms'],
+  latched: ['to be reset', 'to be reset'],
+  high: ['with an alarm', 'with alarms'],
   unheard: ['unheard', 'unheard'],
+  alarm: ['with an alarm', 'with alarms'],
   due: ['due', 'due'],
   quiet: ['quiet', 'quiet'],
 };
 
-/** `25 systems: 1 urgent, 2 unheard, 6 due, 16 quiet` */
-export function countSentence(all: readonly Rank[]): string {
-  const counts = ranks
-    .map((rank) => ({ rank, count: all.filter((other) => other === rank).length }))
-    .filter(({ count }) => count > 0)
-    .map(({ rank, count }) => `${count} ${rankWords[rank][count === 1 ? 0 : 1]}`);
+/** `25 systems: 1 urgent, 2 unheard, 6 due, 16 quiet`; ranks of the same name are counted together. */
+export function countSentence(all: readonly SystemRank[]): string {
+  const names = [...new Set(systemRanks.map((rank) => rankWords[rank][1]))];
+  const counts = names
+    .map((many) => ({ many, ranks: all.filter((rank) => rankWords[rank][1] === many) }))
+    .flatMap(({ many, ranks: [first, ...others] }) =>
+      first === undefined ? [] : [`${others.length + 1} ${others.length === 0 ? rankWords[first][0] : many}`],
+    );
   const total = `${all.length} ${all.length === 1 ? 'system' : 'systems'}`;
   return counts.length === 0 ? total : `${total}: ${counts.join(', ')}`;
 }

@@ -24,8 +24,15 @@ describe('a round', () => {
     });
   });
 
-  it('is never quiet from stale data, and stays urgent', () => {
+  it('does not say that dosing is stopped while a pump has not confirmed it', () => {
+    const { sentence } = roundOf(makeSystem({ status: makeStatus({ stoppedHeads: 1, unconfirmedStops: 1 }) }), nowMs, null);
+    expect(sentence).toContain('Dosing is asked to stop; the pump has not confirmed it.');
+    expect(sentence).not.toContain('is stopped');
+  });
+
+  it('is never quiet from stale data, and keeps what does not go away by itself', () => {
     expect(roundOf(makeSystem(), nowMs, nowMs - 600_000).word).toBe('unheard');
-    expect(roundOf(makeSystem({ status: makeStatus({ latched: true }) }), nowMs, nowMs - 600_000).word).toBe('urgent');
+    expect(roundOf(makeSystem({ status: makeStatus({ latched: true }) }), nowMs, nowMs - 600_000).word).toBe('to be reset');
+    expect(roundOf(makeSystem({ status: makeStatus({ worstPriority: 'urgent' }) }), nowMs, nowMs - 600_000).word).toBe('urgent');
   });
 });

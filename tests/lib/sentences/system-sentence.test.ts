@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { rankOf, countSentence } from '../../../lib/sentences/system-rank.ts';
+import { countSentence } from '../../../lib/sentences/system-rank.ts';
 import { doseSentence, nutrientsSentence, systemSentence } from '../../../lib/sentences/system-sentence.ts';
 import { makeStatus, makeSystem, nowMs } from '../../helpers/client-fixtures.ts';
 
@@ -63,29 +63,34 @@ describe('the sentence of a system', () => {
     expect(systemSentence(makeSystem({ status }), nowMs, null)).toContain('1 of 2 carbon heads are stopped.');
   });
 
+  it.each([
+    [
+      { stoppedHeads: 1, unconfirmedStops: 1 },
+      "Dosing is asked to stop; the pump has not confirmed it. Pull the pump's plug; dry hands first.",
+    ],
+    [{ stoppedHeads: 1, unconfirmedStops: 1, latched: true }, 'Dosing is asked to stop by an alarm; the pump has not confirmed it.'],
+    [{ stoppedHeads: 3, unconfirmedStops: 2, carbonHeads: 3 }, 'Dosing is asked to stop; 2 of 3 heads are not confirmed.'],
+  ])('claims no stop that the pump has not confirmed: %j', (changed, sentence) => {
+    const said = systemSentence(makeSystem({ status: makeStatus(changed) }), nowMs, null);
+    expect(said).toContain(sentence);
+    expect(said).not.toMatch(/(is|are) stopped/);
+  });
+
   it('says that devices are not heard', () => {
     expect(systemSentence(makeSystem({ status: makeStatus({ offlineDevices: 2 }) }), nowMs, null)).toContain('2 devices are not heard');
   });
 });
 
-describe('the rank of a system', () => {
-  it.each([
-    [{}, 'quiet'],
-    [{ worstPriority: 'urgent' as const, openAlarms: 1 }, 'urgent'],
-    [{ latched: true }, 'urgent'],
-    [{ worstPriority: 'high' as const, openAlarms: 1, offlineDevices: 1 }, 'alarm'],
-    [{ worstPriority: 'medium' as const, openAlarms: 1, offlineDevices: 1 }, 'unheard'],
-    [{ worstPriority: 'low' as const, openAlarms: 1 }, 'alarm'],
-    [{ stoppedHeads: 1 }, 'due'],
-    [{ nitrate: null }, 'due'],
-    [{ phosphate: { at: daysAgo(8), canonicalMgPerL: 0.05, below: false } }, 'due'],
-  ])('of %j is %s', (changed, rank) => {
-    expect(rankOf(makeStatus(changed), nowMs)).toBe(rank);
-  });
-
-  it('is counted from the worst, without the empty ones', () => {
-    expect(countSentence(['quiet', 'urgent', 'quiet', 'unheard'])).toBe('4 systems: 1 urgent, 1 unheard, 2 quiet');
+describe('the count of systems', () => {
+  it('goes from the worst, without the empty ones', () => {
+    expect(countSentence(['quiet', 'urgent', 'quiet', 'unheard', 'latched'])).toBe(
+      '5 systems: 1 urgent, 1 to be reset, 1 unheard, 2 quiet',
+    );
     expect(countSentence(['alarm'])).toBe('1 system: 1 with an alarm');
     expect(countSentence([])).toBe('0 systems');
+  });
+
+  it('puts alarms together, whatever their priority', () => {
+    expect(countSentence(['alarm', 'unheard', 'high'])).toBe('3 systems: 2 with alarms, 1 unheard');
   });
 });
