@@ -4,7 +4,7 @@ import type { Alarms } from '../alarms/create-alarms.ts';
 import { presentAlarm } from '../alarms/present-alarm.ts';
 import type { Position } from '../db/seek.ts';
 import { NotFoundError } from '../errors.ts';
-import { pageFrom, pageRequest, wholePage } from './page.ts';
+import { pageFrom, pageRequest, pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 const positionOf = (row: ListedAlarm): Position => ({ key: row.raisedAtMs, id: row.id });
@@ -31,8 +31,8 @@ export function alarmHandlers(alarms: Alarms) {
     take: ({ params, person, body }) => alarms.take(params.alarmId, person.userId, Date.parse(body.arriveAt)),
     shelve: ({ params, person, body }) => alarms.shelve(params.alarmId, person.userId, Date.parse(body.until), body.reason),
     reset: ({ params, person, body }) => alarms.reset(params.alarmId, person.userId, body.cause),
-    async listRules({ params }) {
-      return wholePage(await alarms.rules.list(params.systemId));
+    async listRules({ params, query }) {
+      return pageOfWhole(await alarms.rules.list(params.systemId), query);
     },
     putRule: ({ params, person, site, body }) =>
       alarms.rules.put(params.systemId, codeOf(params.code), body, { userId: person.userId, role: site.role }),

@@ -4,6 +4,7 @@ import type { Auth } from '../auth/create-auth.ts';
 import type { Row } from '../db/schema.ts';
 import { NotSignedInError } from '../errors.ts';
 import { bearerOf } from './bearer.ts';
+import { pageOfWhole } from './page.ts';
 import type { RefreshCookie } from './refresh-cookie.ts';
 import { handlers } from './route.ts';
 import { requireSameOrigin } from './same-origin.ts';
@@ -75,9 +76,12 @@ export function authHandlers(auth: Auth, cookie: RefreshCookie, publicUrl: strin
       await auth.changePassword(person, body, callerOf(request));
       return {};
     },
-    async sessions({ person }) {
+    async sessions({ person, query }) {
       const open = await auth.sessions.list(person.userId);
-      return { items: open.map((session) => asSession(session, person.sessionId)), next: null };
+      return pageOfWhole(
+        open.map((session) => asSession(session, person.sessionId)),
+        query,
+      );
     },
     async endSession({ person, params }) {
       await auth.sessions.end(person.userId, params.sessionId);

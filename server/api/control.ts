@@ -4,7 +4,7 @@ import type { Actor } from '../audit/record-audit.ts';
 import type { Orders } from '../orders/create-orders.ts';
 import type { Schedules } from '../schedules/create-schedules.ts';
 import type { Stops } from '../stops/create-stops.ts';
-import { wholePage } from './page.ts';
+import { pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 export interface ControlServices {
@@ -25,6 +25,6 @@ export function controlHandlers({ schedules, stops, orders, listHeads }: Control
     },
     stop: ({ params, body, person }) => stops.stop(params.systemId, body.heads, actorOf(person)),
     resume: ({ params, body, person }) => stops.resume(params.systemId, body.heads, actorOf(person)),
-    listOrders: async ({ params }) => wholePage(await orders.list(params.systemId)),
+    listOrders: async ({ params, query }) => pageOfWhole(await orders.list(params.systemId), query),
   });
 }

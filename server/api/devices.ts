@@ -1,11 +1,11 @@
 import type { Devices } from '../devices/create-devices.ts';
-import { wholePage } from './page.ts';
+import { pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 /** Raw messages and rejects of a device are in `messages.ts`. */
 export function deviceHandlers(devices: Devices) {
   return handlers({
-    listDevices: async ({ params }) => wholePage(await devices.list(params.systemId)),
+    listDevices: async ({ params, query }) => pageOfWhole(await devices.list(params.systemId), query),
     createDevice: async ({ site, person, params, body, repeated }) => {
       const made = await devices.create({ siteId: site.id, systemId: params.systemId, userId: person.userId, body });
       if (made.isRepeated) repeated();

@@ -1,13 +1,16 @@
 import { isoOf } from '#shared/time/iso-of.ts';
 import type { Ingest } from '../ingest/ingest-port.ts';
 import type { Telemetry } from '../telemetry/create-telemetry.ts';
-import { pageFrom, pageRequest, wholePage } from './page.ts';
+import { pageFrom, pageRequest, pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 export function messageHandlers(ingest: Ingest, telemetry: Telemetry) {
   return handlers({
-    listMessages: async ({ params }) =>
-      wholePage(ingest.recentMessages(params.deviceId).map(({ receivedMs, ...message }) => ({ ...message, at: isoOf(receivedMs) }))),
+    listMessages: async ({ params, query }) =>
+      pageOfWhole(
+        ingest.recentMessages(params.deviceId).map(({ receivedMs, ...message }) => ({ ...message, at: isoOf(receivedMs) })),
+        query,
+      ),
     listRejects: async ({ params, query }) => {
       const rows = await telemetry.listRejects(params.deviceId, pageRequest(query));
       return pageFrom(

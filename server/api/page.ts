@@ -14,16 +14,22 @@ function encodeCursor(position: Position): string {
 }
 
 function decodeCursor(cursor: string): Position | null {
+  const decoded = decodeJson(cursor);
+  if (!Array.isArray(decoded) || decoded.length !== 2) return null;
+  const [key, id] = decoded as [unknown, unknown];
+  return typeof key === 'number' && Number.isFinite(key) && typeof id === 'string' ? { key, id } : null;
+}
+
+function decodeJson(cursor: string): unknown {
   try {
-    const decoded: unknown = JSON.parse(Buffer.from(cursor, 'base64url').toString('utf8'));
-    if (!Array.isArray(decoded) || decoded.length !== 2) return null;
-    const [key, id] = decoded as [unknown, unknown];
-    return typeof key === 'number' && Number.isFinite(key) && typeof id === 'string' ? { key, id } : null;
+    return JSON.parse(Buffer.from(cursor, 'base64url').toString('utf8'));
   } catch (error) {
     if (error instanceof SyntaxError) return null;
     throw error;
   }
 }
+
+const foreignCursor = () => new BadInputError([{ path: 'cursor', message: 'Give the `next` of the page before, unchanged' }]);
 
 /**
  * What a service is asked for: one row more than the page holds, so that it shows whether another page follows.
@@ -32,7 +38,7 @@ function decodeCursor(cursor: string): Position | null {
 export function pageRequest(query: PageQuery): PageRequest {
   if (query.cursor === undefined) return { limit: query.limit + 1, after: null };
   const after = decodeCursor(query.cursor);
-  if (after === null) throw new BadInputError([{ path: 'cursor', message: 'Give the `next` of the page before, unchanged' }]);
+  if (after === null) throw foreignCursor();
   return { limit: query.limit + 1, after };
 }
 
@@ -49,7 +55,21 @@ export function pageFrom<Row, Item>(
   return { items: shown.map(itemOf), next };
 }
 
-/** A list that is short by nature and comes whole. */
-export function wholePage<Item>(items: Item[]): Page<Item> {
-  return { items, next: null };
+/**
+ * A page of a list that is short by nature and was read whole. Its cursor is a place in it: what is added in front in
+ * between shows an item twice rather than hiding one.
+ * @throws {BadInputError} when the cursor is none of ours.
+ */
+export function pageOfWhole<Item>(items: readonly Item[], query: PageQuery): Page<Item> {
+  const from = query.cursor === undefined ? 0 : decodePlace(query.cursor);
+  if (from === null) throw foreignCursor();
+  const to = from + query.limit;
+  return { items: items.slice(from, to), next: to < items.length ? Buffer.from(JSON.stringify([to])).toString('base64url') : null };
+}
+
+function decodePlace(cursor: string): number | null {
+  const decoded = decodeJson(cursor);
+  if (!Array.isArray(decoded) || decoded.length !== 1) return null;
+  const [place] = decoded as [unknown];
+  return typeof place === 'number' && Number.isSafeInteger(place) && place >= 0 ? place : null;
 }

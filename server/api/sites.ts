@@ -2,7 +2,7 @@ import type { Core } from '../core.ts';
 import type { Row } from '../db/schema.ts';
 import type { Sites } from '../sites/create-sites.ts';
 import { type AuditRow, auditOfSite, outboxOfSite } from '../sites/site-log.ts';
-import { pageFrom, pageRequest, wholePage } from './page.ts';
+import { pageFrom, pageRequest, pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 const readJson = (text: string | null): unknown => (text === null ? null : JSON.parse(text));
@@ -25,13 +25,13 @@ const asMail = (notice: Row<'notice'>) => ({
 
 export function siteHandlers({ reader }: Core, sites: Sites) {
   return handlers({
-    listSites: async ({ person }) => wholePage(await sites.list(person.userId)),
+    listSites: async ({ person, query }) => pageOfWhole(await sites.list(person.userId), query),
     async createSite({ person, body, repeated }) {
       const { value, isRepeated } = await sites.create(person.userId, body);
       if (isRepeated) repeated();
       return value;
     },
-    listMembers: async ({ site }) => wholePage(await sites.members(site.id, site.role)),
+    listMembers: async ({ site, query }) => pageOfWhole(await sites.members(site.id, site.role), query),
     async invite({ site, person, body, repeated }) {
       const { value, isRepeated } = await sites.invite(site.id, person.userId, body);
       if (isRepeated) repeated();

@@ -1,10 +1,10 @@
 import type { Systems } from '../systems/create-systems.ts';
-import { wholePage } from './page.ts';
+import { pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 export function systemHandlers(systems: Systems) {
   return handlers({
-    listSystems: async ({ person }) => wholePage(await systems.listOf(person.userId)),
+    listSystems: async ({ person, query }) => pageOfWhole(await systems.listOf(person.userId), query),
     getSystem: ({ person, params }) => systems.get(person.userId, params.systemId),
     createSystem: async ({ site, person, body, repeated }) => {
       const made = await systems.create({ siteId: site.id, userId: person.userId, body });

@@ -1,12 +1,12 @@
 import { presentRun } from '../telemetry/present-run.ts';
 import { positionOfRun, type Telemetry } from '../telemetry/create-telemetry.ts';
-import { pageFrom, pageRequest, wholePage } from './page.ts';
+import { pageFrom, pageRequest, pageOfWhole } from './page.ts';
 import { handlers } from './route.ts';
 
 /** The drop tape and the doses by bucket are in `doses.ts`. */
 export function telemetryHandlers(telemetry: Telemetry) {
   return handlers({
-    listSeries: async ({ params }) => wholePage(await telemetry.listSeries(params.systemId)),
+    listSeries: async ({ params, query }) => pageOfWhole(await telemetry.listSeries(params.systemId), query),
     updateSeries: ({ params, site, person, body }) =>
       telemetry.updateSeries({ siteId: site.id, seriesId: params.seriesId, userId: person.userId, patch: body }),
     getPoints: ({ params, query }) =>

@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { alarmCodes } from '../domain/alarm-codes.ts';
 import { alarmStates } from '../domain/alarm-life-cycle.ts';
 import { endpoint } from './endpoint.ts';
-import { idSchema, pageOf, pageQuerySchema, timestampSchema } from './fields.ts';
+import { idSchema, pageOf, pageQuerySchema, shortListQuerySchema, timestampSchema } from './fields.ts';
 import { prioritySchema } from './systems.ts';
 
 export const alarmCodeSchema = z.enum(alarmCodes);
@@ -152,6 +152,7 @@ export const alarmEndpoints = {
     path: '/systems/:systemId/alarm-rules',
     who: 'viewer',
     summary: 'The limits of a system, defaults included',
+    query: shortListQuerySchema,
     answer: pageOf(alarmRuleSchema),
   }),
   putRule: endpoint({

@@ -1,7 +1,16 @@
 import { z } from 'zod';
 import { roleSchema } from '../domain/role.ts';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, timeZoneSchema, timestampSchema } from './fields.ts';
+import {
+  clientIdSchema,
+  emptySchema,
+  idSchema,
+  nameSchema,
+  pageOf,
+  shortListQuerySchema,
+  timeZoneSchema,
+  timestampSchema,
+} from './fields.ts';
 
 export const emailSchema = z
   .email('Give an e-mail address')
@@ -116,6 +125,7 @@ export const authEndpoints = {
     path: '/me/sessions',
     who: 'signed-in',
     summary: "One's open sessions",
+    query: shortListQuerySchema,
     answer: pageOf(sessionSchema),
   }),
   endSession: endpoint({

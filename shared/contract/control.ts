@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { endpoint } from './endpoint.ts';
-import { idSchema, pageOf, timestampSchema } from './fields.ts';
+import { idSchema, pageOf, shortListQuerySchema, timestampSchema } from './fields.ts';
 import { headSchema } from './rig.ts';
 
 export const orderOutcomeSchema = z.object({
@@ -69,6 +69,7 @@ export const controlEndpoints = {
     path: '/systems/:systemId/orders',
     who: 'viewer',
     summary: 'The newest orders to the pumps of a system with what became of them',
+    query: shortListQuerySchema,
     answer: pageOf(orderOutcomeSchema.extend({ do: z.enum(['stop', 'resume', 'dose', 'prime']), createdAt: timestampSchema })),
   }),
 };

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, idSchema, nameSchema, pageOf, pageQuerySchema, timestampSchema } from './fields.ts';
+import { clientIdSchema, idSchema, nameSchema, pageOf, pageQuerySchema, shortListQuerySchema, timestampSchema } from './fields.ts';
 
 export const reportedHeadSchema = z.object({
   head: z.number().int(),
@@ -62,6 +62,7 @@ export const deviceEndpoints = {
     path: '/systems/:systemId/devices',
     who: 'viewer',
     summary: 'The pumps and probes of a system',
+    query: shortListQuerySchema,
     answer: pageOf(deviceSchema),
   }),
   createDevice: endpoint({
@@ -85,6 +86,7 @@ export const deviceEndpoints = {
     path: '/devices/:deviceId/messages',
     who: 'sitter',
     summary: 'The newest raw messages of a device since the server started',
+    query: shortListQuerySchema,
     answer: pageOf(rawMessageSchema),
   }),
   listRejects: endpoint({

@@ -44,6 +44,9 @@ export const pageQuerySchema = z.object({
 });
 export type PageQuery = z.infer<typeof pageQuerySchema>;
 
+/** The query of a list that is short by nature: without a limit it comes whole, up to the most that a page holds. */
+export const shortListQuerySchema = pageQuerySchema.extend({ limit: z.coerce.number().int().min(1).max(500).default(500) });
+
 /** Every list: newest first, `next` is the cursor of the following page or null. */
 export function pageOf<Item extends z.ZodType>(item: Item) {
   return z.object({ items: z.array(item), next: z.string().nullable() });

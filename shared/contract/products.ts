@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, idSchema, nameSchema, pageOf } from './fields.ts';
+import { clientIdSchema, idSchema, nameSchema, pageOf, shortListQuerySchema } from './fields.ts';
 
 export const substances = ['ethanol', 'methanol', 'acetic-acid', 'glucose', 'sucrose', 'water', 'other'] as const;
 
@@ -42,6 +42,7 @@ export const productEndpoints = {
     path: '/sites/:siteId/products',
     who: 'viewer',
     summary: 'The carbon sources and other liquids of a site',
+    query: shortListQuerySchema,
     answer: pageOf(productSchema),
   }),
   createProduct: endpoint({

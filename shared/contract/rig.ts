@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, idSchema, millilitresSchema, nameSchema, pageOf, timestampSchema } from './fields.ts';
+import { clientIdSchema, idSchema, millilitresSchema, nameSchema, pageOf, shortListQuerySchema, timestampSchema } from './fields.ts';
 
 export const headSchema = z.object({
   id: idSchema,
@@ -79,6 +79,7 @@ export const rigEndpoints = {
     path: '/systems/:systemId/heads',
     who: 'viewer',
     summary: 'The heads in use on a system',
+    query: shortListQuerySchema,
     answer: pageOf(headSchema),
   }),
   createHead: endpoint({
@@ -102,6 +103,7 @@ export const rigEndpoints = {
     path: '/systems/:systemId/reservoirs',
     who: 'viewer',
     summary: 'The bottles that heads draw from',
+    query: shortListQuerySchema,
     answer: pageOf(reservoirSchema),
   }),
   createReservoir: endpoint({

@@ -2,7 +2,17 @@ import { z } from 'zod';
 import { roleSchema } from '../domain/role.ts';
 import { inviteBodySchema } from './auth.ts';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, emptySchema, idSchema, nameSchema, pageOf, pageQuerySchema, timeZoneSchema, timestampSchema } from './fields.ts';
+import {
+  clientIdSchema,
+  emptySchema,
+  idSchema,
+  nameSchema,
+  pageOf,
+  pageQuerySchema,
+  shortListQuerySchema,
+  timeZoneSchema,
+  timestampSchema,
+} from './fields.ts';
 
 export const siteSchema = z.object({ id: idSchema, name: z.string(), timeZone: z.string(), role: roleSchema });
 export type Site = z.infer<typeof siteSchema>;
@@ -40,7 +50,14 @@ export const mailSchema = z.object({
 });
 
 export const siteEndpoints = {
-  listSites: endpoint({ method: 'get', path: '/sites', who: 'signed-in', summary: "One's sites", answer: pageOf(siteSchema) }),
+  listSites: endpoint({
+    method: 'get',
+    path: '/sites',
+    who: 'signed-in',
+    summary: "One's sites",
+    query: shortListQuerySchema,
+    answer: pageOf(siteSchema),
+  }),
   createSite: endpoint({
     method: 'post',
     path: '/sites',
@@ -54,6 +71,7 @@ export const siteEndpoints = {
     path: '/sites/:siteId/members',
     who: 'viewer',
     summary: 'Who has a role in the site',
+    query: shortListQuerySchema,
     answer: pageOf(memberSchema),
   }),
   invite: endpoint({

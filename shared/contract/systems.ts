@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { roleSchema } from '../domain/role.ts';
 import { endpoint } from './endpoint.ts';
-import { clientIdSchema, idSchema, litresSchema, nameSchema, pageOf, timestampSchema } from './fields.ts';
+import { clientIdSchema, idSchema, litresSchema, nameSchema, pageOf, shortListQuerySchema, timestampSchema } from './fields.ts';
 
 export const prioritySchema = z.enum(['low', 'medium', 'high', 'urgent']);
 export type Priority = z.infer<typeof prioritySchema>;
@@ -67,6 +67,7 @@ export const systemEndpoints = {
     path: '/systems',
     who: 'signed-in',
     summary: "The systems of all one's sites, worst first",
+    query: shortListQuerySchema,
     answer: pageOf(systemSchema),
   }),
   getSystem: endpoint({

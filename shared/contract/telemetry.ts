@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { endpoint } from './endpoint.ts';
-import { idSchema, nameSchema, pageOf, pageQuerySchema, rangeTimeSchema, timestampSchema } from './fields.ts';
+import { idSchema, nameSchema, pageOf, pageQuerySchema, rangeTimeSchema, shortListQuerySchema, timestampSchema } from './fields.ts';
 
 export const quantities = ['temperature', 'ph', 'orp', 'conductivity', 'oxygen-percent', 'oxygen', 'level', 'power', 'flow'] as const;
 export const quantitySchema = z.enum(quantities);
@@ -107,6 +107,7 @@ export const telemetryEndpoints = {
     path: '/systems/:systemId/series',
     who: 'viewer',
     summary: 'The measured series of a system',
+    query: shortListQuerySchema,
     answer: pageOf(seriesSchema),
   }),
   updateSeries: endpoint({

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { pageFrom, pageRequest } from '../../../server/api/page.ts';
+import { pageFrom, pageOfWhole, pageRequest } from '../../../server/api/page.ts';
 import { BadInputError } from '../../../server/errors.ts';
 
 interface Row {
@@ -50,4 +50,20 @@ describe('paging', () => {
       expect(() => pageRequest({ limit: 10, cursor })).toThrow(BadInputError);
     },
   );
+});
+
+describe('a list that was read whole', () => {
+  const letters = ['a', 'b', 'c'];
+
+  it('is walked through without losing or repeating one, and ends with the last', () => {
+    const first = pageOfWhole(letters, { limit: 2 });
+    expect(first.items).toEqual(['a', 'b']);
+    expect(pageOfWhole(letters, { limit: 2, cursor: first.next ?? '' })).toEqual({ items: ['c'], next: null });
+    expect(pageOfWhole(letters, { limit: 3 })).toEqual({ items: letters, next: null });
+    expect(pageOfWhole([], { limit: 1 })).toEqual({ items: [], next: null });
+  });
+
+  it.each(['nonsense', '', 'Wy0xXQ', 'WzEuNV0', 'WzEsMl0', 'e30'])('refuses the cursor %j', (cursor) => {
+    expect(() => pageOfWhole(letters, { limit: 1, cursor })).toThrow(BadInputError);
+  });
 });
