@@ -1,4 +1,5 @@
 import SqliteConnection from 'better-sqlite3';
+import type { Kysely } from 'kysely';
 import { describe, expect, it } from 'vitest';
 import { migrate, migrations } from '../../../server/db/migrate.ts';
 
@@ -58,5 +59,43 @@ describe('migrations', () => {
     expect(schemaOf(old)).toEqual(schemaOf(fresh));
     fresh.close();
     old.close();
+  });
+
+  const next = '002-note-on-sites';
+  const withNext = {
+    ...migrations,
+    [next]: { up: (db: Kysely<unknown>) => db.schema.alterTable('site').addColumn('note', 'text').execute() },
+  };
+
+  it('keep every row when a next one adds a column, also when it runs again', async () => {
+    const connection = new SqliteConnection(':memory:');
+    await migrate(connection);
+    const counts = fillEveryTable(connection);
+    const before = connection.prepare('select * from site').all() as object[];
+    await migrate(connection, undefined, withNext);
+    await migrate(connection, undefined, withNext);
+    for (const [table, count] of counts) expect(countRows(connection, table), table).toBe(count);
+    expect(connection.prepare('select * from site').all()).toEqual(before.map((row) => ({ ...row, note: null })));
+    connection.close();
+  });
+
+  it('leave schema and rows as they were when a next one fails halfway', async () => {
+    const connection = new SqliteConnection(':memory:');
+    await migrate(connection);
+    const counts = fillEveryTable(connection);
+    const before = schemaOf(connection);
+    const failing = {
+      ...migrations,
+      [next]: {
+        async up(db: Kysely<unknown>) {
+          await withNext[next]?.up(db);
+          throw new Error('it failed halfway');
+        },
+      },
+    };
+    await expect(migrate(connection, undefined, failing)).rejects.toThrow('halfway');
+    expect(schemaOf(connection)).toEqual(before);
+    for (const [table, count] of counts) expect(countRows(connection, table), table).toBe(count);
+    connection.close();
   });
 });
