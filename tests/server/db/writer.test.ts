@@ -1,3 +1,4 @@
+import { chmodSync, statSync } from 'node:fs';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { openWritingConnection, query } from '../../../server/db/open.ts';
 import { manualClock, openTestCore, type TestCore } from '../../helpers/core.ts';
@@ -64,5 +65,15 @@ describe('the writing connection', () => {
     } finally {
       again.close();
     }
+  });
+
+  it('leaves the database and what stands beside it to their owner, also where they were open to all', async () => {
+    await opened.core.writer.commit((tx) => tx.run(site('a')));
+    const { databaseFile } = opened.core;
+    const modes = () => ['', '-wal', '-shm'].map((end) => (statSync(databaseFile + end).mode & 0o777).toString(8));
+    expect(modes()).toEqual(['600', '600', '600']);
+    for (const end of ['', '-wal', '-shm']) chmodSync(databaseFile + end, 0o644);
+    openWritingConnection(databaseFile).close();
+    expect(modes()).toEqual(['600', '600', '600']);
   });
 });
