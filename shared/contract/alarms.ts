@@ -47,7 +47,7 @@ export const alarmTransitionSchema = z.object({
 
 /** Limits: `null` means from the schedule in force. */
 export const alarmRuleBodySchema = z
-  .object({
+  .strictObject({
     target: z.string().min(1).max(80).default('system'),
     enabled: z.boolean().default(true),
     priority: prioritySchema.optional(),

@@ -18,10 +18,10 @@ export type OrderOutcome = z.infer<typeof orderOutcomeSchema>;
 export const stopAnswerSchema = z.object({ orders: z.array(orderOutcomeSchema) });
 export type StopAnswer = z.infer<typeof stopAnswerSchema>;
 
-const overrideSchema = z.object({ reason: z.string().trim().min(10, 'Write down why, in at least 10 characters').max(1000) });
+const overrideSchema = z.strictObject({ reason: z.string().trim().min(10, 'Write down why, in at least 10 characters').max(1000) });
 
 export const scheduleEntrySchema = z
-  .object({
+  .strictObject({
     headId: idSchema,
     mlPerDay: z.number().min(0, 'Give mL per day, 0 for no dose').max(10_000),
     slots: z.number().int().min(1).max(96).optional(),
@@ -38,7 +38,7 @@ export const controlEndpoints = {
     path: '/systems/:systemId/schedule',
     who: 'keeper',
     summary: 'Set the schedule by hand; above the ceiling only with a written override of the owner',
-    body: z.object({
+    body: z.strictObject({
       heads: z.array(scheduleEntrySchema).min(1).max(32),
       override: overrideSchema.optional(),
       /** Said once where no label or composition tells a ceiling. */

@@ -32,7 +32,7 @@ export type Head = z.infer<typeof headSchema>;
 
 const headNumberSchema = z.number().int().min(1).max(16);
 
-const headFieldsSchema = z.object({
+const headFieldsSchema = z.strictObject({
   kind: z.enum(['carbon', 'other']),
   productId: idSchema.nullable().default(null),
   reservoirId: idSchema.nullable().default(null),

@@ -53,7 +53,7 @@ export const systemSchema = z.object({
 });
 export type System = z.infer<typeof systemSchema>;
 
-export const systemBodySchema = z.object({
+export const systemBodySchema = z.strictObject({
   id: clientIdSchema,
   name: nameSchema,
   displayLitres: litresSchema,
