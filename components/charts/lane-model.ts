@@ -71,6 +71,8 @@ export interface LaneModel {
   readonly traces: readonly Trace[];
   readonly tests: TestMarks | null;
   readonly doses: DoseMarks | null;
+  /** Said in a lane that has nothing to show; null where it has. */
+  readonly emptyWords: string | null;
 }
 
 /** Room for the values at the left, the same in every lane so that their times line up. */
@@ -164,6 +166,7 @@ export function laneModel(lane: LaneInput, frame: LaneFrame, ticks: LaneModel['t
     limits: lane.limits.map((limit) => ({ kind: limit.kind, y: toY(limit.value), label: limit.label })),
     traces: lane.traces.slice(0, mostTraces).map((trace) => traceOf(trace, toX, toY, plot)),
     tests: lane.tests && testMarks(lane.tests, toX, toY),
+    emptyWords: lane.tests?.points.length === 0 ? 'no test yet' : null,
     doses: lane.doses && doseMarks(lane.doses, { range, toX, toY }),
   };
 }

@@ -11,7 +11,7 @@ function testSentence(lane: LaneInput, range: TimeRange, zone: string): string {
     .sort((a, b) => a.tMs - b.tMs);
   const first = seen[0];
   const last = seen.at(-1);
-  if (!first || !last) return 'no test in this range';
+  if (!first || !last) return lane.tests?.points.length === 0 ? 'no test yet' : 'no test in this range';
   const say = (point: typeof first) => `${point.below ? 'under ' : ''}${formatNumber(point.value, lane.decimals)}`;
   const day = (tMs: number) => DateTime.fromMillis(tMs, { zone }).toFormat('d LLLL');
   if (seen.length === 1) return `one test, ${say(first)} on ${day(first.tMs)}`;

@@ -16,9 +16,9 @@ function decimalsOf(nutrient: Nutrient, points: readonly TestPoint[]): number {
   return points.every((point) => Math.abs(point.value - Math.round(point.value)) < 0.05) ? 0 : 1;
 }
 
-/** The lane of a nutrient: its tests as the ion, over the band that is aimed for. */
-export function nutrientLane(nutrient: Nutrient, tests: readonly Test[]): LaneInput {
-  const points = pointsOf(nutrient, tests);
+/** The lane of a nutrient: its tests as the ion, over the band that is aimed for. Tests that are not here yet are not said to be none. */
+export function nutrientLane(nutrient: Nutrient, tests: readonly Test[] | undefined): LaneInput {
+  const points = pointsOf(nutrient, tests ?? []);
   const band = defaultBands[nutrient];
   const isNitrate = nutrient === 'nitrate';
   return {
@@ -31,7 +31,7 @@ export function nutrientLane(nutrient: Nutrient, tests: readonly Test[]): LaneIn
     band: { low: band.lowMgPerL, high: band.highMgPerL, label: `aim ${formatBand(nutrient)}` },
     limits: [],
     traces: [],
-    tests: { shape: isNitrate ? 'circle' : 'square', dashed: !isNitrate, points },
+    tests: tests === undefined ? null : { shape: isNitrate ? 'circle' : 'square', dashed: !isNitrate, points },
     doses: null,
   };
 }

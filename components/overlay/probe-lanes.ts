@@ -1,8 +1,10 @@
 import type { Points, Quantity, Series } from '#shared/contract/telemetry.ts';
-import { seriesName, seriesUnit } from '../../lib/format/series-value.ts';
+import { salinityPair } from '../../lib/salinity.ts';
+import { seriesName, seriesNameAmong, seriesUnit } from '../../lib/format/series-value.ts';
 import { decimalsFor } from '../../lib/format/number.ts';
 import type { Columns } from '../charts/gaps.ts';
 import type { LaneInput } from '../charts/lane-model.ts';
+import { salinityLane } from './salinity-lane.ts';
 
 /** How a kind of quantity is laid out; in this order, with what is not in use by default folded away. */
 interface Layout {
@@ -27,6 +29,7 @@ const layouts: Record<Quantity, Layout> = {
 };
 const order = Object.keys(layouts);
 const seriesPerLane = 3;
+const salinityId = 'salinity';
 
 /** The series of one lane: one kind of quantity in one unit. */
 export interface ProbeGroup {
@@ -45,8 +48,13 @@ function kindOf(series: Series): string {
 export function groupProbes(all: readonly Series[]): ProbeGroup[] {
   const kinds = new Map<string, Series[]>();
   for (const series of all) kinds.set(kindOf(series), [...(kinds.get(kindOf(series)) ?? []), series]);
+  const pair = salinityPair(all);
+  const computed: ProbeGroup[] =
+    pair === null
+      ? []
+      : [{ id: salinityId, title: 'Salinity, computed', unit: '', folded: true, series: [pair.conductivity, pair.temperature] }];
   const rank = (series: Series | undefined) => (series?.quantity ? order.indexOf(series.quantity) : order.length);
-  return [...kinds.entries()]
+  const measured = [...kinds.entries()]
     .sort(([, a], [, b]) => rank(a[0]) - rank(b[0]))
     .flatMap(([kind, series]) => {
       const count = Math.ceil(series.length / seriesPerLane);
@@ -64,6 +72,7 @@ export function groupProbes(all: readonly Series[]): ProbeGroup[] {
         };
       });
     });
+  return [...measured, ...computed];
 }
 
 const nothing: Columns = { resolutionMs: 0, t: [], min: [], mean: [], max: [], count: [] };
@@ -73,6 +82,8 @@ function decimalsOf(points: readonly Columns[]): number {
 }
 
 export function probeLane(group: ProbeGroup, bySeriesId: ReadonlyMap<string, Points>): LaneInput {
+  const salinity = group.id === salinityId ? salinityLane(group.series, bySeriesId) : null;
+  if (salinity !== null) return salinity;
   const quantity = group.series[0]?.quantity ?? null;
   const layout = quantity === null ? null : layouts[quantity];
   const columns = group.series.map((series) => bySeriesId.get(series.id) ?? nothing);
@@ -85,7 +96,12 @@ export function probeLane(group: ProbeGroup, bySeriesId: ReadonlyMap<string, Poi
     leastSpan: layout?.leastSpan ?? 0,
     band: null,
     limits: [],
-    traces: group.series.map((series, i) => ({ id: series.id, label: seriesName(series), dashed: i > 0, columns: columns[i] ?? nothing })),
+    traces: group.series.map((series, i) => ({
+      id: series.id,
+      label: seriesNameAmong(series, group.series),
+      dashed: i > 0,
+      columns: columns[i] ?? nothing,
+    })),
     tests: null,
     doses: null,
   };

@@ -22,14 +22,12 @@ export interface OverlayLanes {
   readonly error: Error | null;
 }
 
-const noTests: readonly Test[] = [];
-
 /** The lanes of a system over a range, from the cache where they are known, and from the server around the range. */
 export function useOverlayLanes(
   systemId: string,
   range: TimeRange,
   zone: string,
-  tests: readonly Test[] = noTests,
+  tests: readonly Test[] | undefined,
   groups: readonly ProbeGroup[],
 ): OverlayLanes {
   const window = useMemo(() => fetchWindow(range), [range]);
@@ -37,7 +35,8 @@ export function useOverlayLanes(
   const doses = useDoses(systemId, window, doseBuckets);
   const handDoses = useHandDoses(systemId);
   const { runs } = useRunsBetween(systemId, window, isNear);
-  const seriesIds = useMemo(() => groups.flatMap((group) => group.series.map((series) => series.id)), [groups]);
+  // What is computed stands on series that may have a lane of their own too.
+  const seriesIds = useMemo(() => [...new Set(groups.flatMap((group) => group.series.map((series) => series.id)))], [groups]);
   const points = useManyPoints(systemId, seriesIds, window, pointCount(range));
 
   const nutrients = useMemo(() => [nutrientLane('nitrate', tests), nutrientLane('phosphate', tests)], [tests]);

@@ -1,10 +1,13 @@
 import { quantities, type Series, type Tape } from '#shared/contract/telemetry.ts';
+import { oxygenMgPerLOfPercent } from '#shared/domain/oxygen-saturation.ts';
 import type { Reservoir } from '#shared/contract/rig.ts';
 import type { System, SystemStatus } from '#shared/contract/systems.ts';
 import { formatMl, formatMlOf } from '../../lib/format/millilitres.ts';
 import { defaultBands, formatBand, formatNutrient, nutrientNames, placeInBand, type Nutrient } from '../../lib/format/nutrient.ts';
-import { formatSeriesValue, seriesName } from '../../lib/format/series-value.ts';
+import { formatNumber } from '../../lib/format/number.ts';
+import { formatSeriesValue, seriesNameAmong } from '../../lib/format/series-value.ts';
 import { ageWords, formatAgo, formatDay } from '../../lib/format/time.ts';
+import { isSameWater, latestSalinity, type LatestSalinity } from '../../lib/salinity.ts';
 
 const minuteMs = 60_000;
 const dayMs = 1440 * minuteMs;
@@ -77,14 +80,32 @@ function byQuantity(a: Series, b: Series): number {
   return place(a) - place(b) || a.channel.localeCompare(b.channel);
 }
 
+function freshness(atMs: number | null, timeZone: string, nowMs: number): Pick<ProbeRow, 'age' | 'isOld'> {
+  return { age: atMs === null ? 'never heard' : formatAgo(atMs, timeZone, nowMs), isOld: atMs === null || nowMs - atMs > oldProbeMs };
+}
+
+/** `95 %, 6.4 mg/L`: per cent of saturation says nothing of how much there is to breathe, so that it is converted where it can be. */
+function probeValue(one: Series, salinity: LatestSalinity | null): string {
+  const said = formatSeriesValue(one, one.lastValue);
+  if (one.quantity !== 'oxygen-percent' || one.lastValue === null || salinity === null || !isSameWater(one, salinity)) return said;
+  const mgPerL = oxygenMgPerLOfPercent(one.lastValue, salinity.salinity, salinity.temperatureC);
+  return mgPerL === null ? said : `${said}, ${formatNumber(mgPerL, 1)} mg/L`;
+}
+
+/** Each series with its newest value, and after conductivity the salinity that follows from it. */
 export function probeRows(series: readonly Series[], timeZone: string, nowMs: number): ProbeRow[] {
-  return [...series].sort(byQuantity).map((one) => ({
+  const sorted = [...series].sort(byQuantity);
+  const salinity = latestSalinity(series);
+  const rows = sorted.map((one) => ({
     id: one.id,
-    name: seriesName(one),
-    value: formatSeriesValue(one, one.lastValue),
-    age: one.lastT === null ? 'never heard' : formatAgo(one.lastT, timeZone, nowMs),
-    isOld: one.lastT === null || nowMs - one.lastT > oldProbeMs,
+    name: seriesNameAmong(one, series),
+    value: probeValue(one, salinity),
+    ...freshness(one.lastT, timeZone, nowMs),
   }));
+  if (salinity === null) return rows;
+  const value = `${formatNumber(salinity.salinity, 1)}, computed`;
+  const place = sorted.findLastIndex((one) => one.quantity === 'conductivity') + 1;
+  return rows.toSpliced(place, 0, { id: 'salinity', name: 'Salinity', value, ...freshness(salinity.atMs, timeZone, nowMs) });
 }
 
 export interface BottleRow {
@@ -163,9 +184,10 @@ export interface FirstFacts {
   readonly hasLimit: boolean;
 }
 
-/** The first minutes of a system; null once all four lines are done, and the checklist goes away. */
+/** The first minutes of a system; null once all four lines are done, and while an alarm is open: that comes first. */
 export function firstChecklist({ system, hasHandDose, hasLimit }: FirstFacts): CheckLine[] | null {
   const { status } = system;
+  if (status.openAlarms > 0) return null;
   const lines: CheckLine[] = [
     { key: 'litres', words: 'Litres of water', isDone: system.netLitres > 0 },
     { key: 'tests', words: 'A test of nitrate and one of phosphate', isDone: status.nitrate !== null && status.phosphate !== null },

@@ -28,6 +28,20 @@ export function seriesName(series: Measured): string {
   return series.channel ?? 'Unnamed series';
 }
 
+/**
+ * The name among the series of a system: where others measure the same quantity, the channel tells them apart, `Power, skimmer`
+ * for `power-skimmer`. A name that a person gave stands alone.
+ */
+export function seriesNameAmong(series: Measured, all: readonly Measured[]): string {
+  const name = seriesName(series);
+  const { quantity } = series;
+  if (series.name || quantity === null || all.filter((other) => other.quantity === quantity).length < 2) return name;
+  const second = (series.channel ?? '')
+    .split(/[^\p{L}\p{N}]+/u)
+    .filter((word) => word !== '' && !quantity.split('-').includes(word.toLowerCase()));
+  return second.length === 0 ? name : `${name}, ${second.join(' ')}`;
+}
+
 /** The unit as people write it; a series whose quantity is unknown keeps the unit that the device sent. */
 export function seriesUnit(series: Measured): string {
   if (series.quantity === null || series.quantity === 'flow') return series.unit;

@@ -32,3 +32,16 @@ export function oxygenSaturationMgPerL(salinity: number, temperatureC: number): 
   const kgPerL = seawaterDensityKgPerM3(salinity, ipts68FromIts90(temperatureC)) / 1000;
   return (oxygenSaturationUmolPerKg(salinity, temperatureC) * kgPerL * OXYGEN_G_PER_MOL) / 1000;
 }
+
+/**
+ * Dissolved oxygen in mg/L from a probe's per cent of saturation, or null where the saturation is not defined.
+ * @param percent 100 is equilibrium with water-saturated air at one atmosphere; by day water can be above it
+ * @param salinity practical salinity
+ * @param temperatureC on ITS-90
+ * Source: Garcia & Gordon (1992), as {@link oxygenSaturationUmolPerKg}.
+ * Example: 95 % at salinity 35 and 25 degC gives 6.43.
+ */
+export function oxygenMgPerLOfPercent(percent: number, salinity: number, temperatureC: number): number | null {
+  if (!(percent >= 0) || !(salinity >= 0 && salinity <= 42) || !(temperatureC >= 0 && temperatureC <= 40)) return null;
+  return (percent / 100) * oxygenSaturationMgPerL(salinity, temperatureC);
+}

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { oxygenSaturationMgPerL, oxygenSaturationUmolPerKg } from '#shared/domain/oxygen-saturation.ts';
+import { oxygenMgPerLOfPercent, oxygenSaturationMgPerL, oxygenSaturationUmolPerKg } from '#shared/domain/oxygen-saturation.ts';
 
 /**
  * Benson & Krause (1984) as printed in Standard Methods 4500-O:I and the USGS tables, mg/L: an independent equation.
@@ -60,5 +60,26 @@ describe('oxygen saturation', () => {
     [35, 41],
   ])('refuses salinity %d at %d degC', (salinity, temperatureC) => {
     expect(() => oxygenSaturationUmolPerKg(salinity, temperatureC)).toThrow(RangeError);
+  });
+});
+
+describe('oxygen from per cent of saturation', () => {
+  // Garcia & Gordon (1992): salinity 35 at 25 degC holds 206.788 umol/kg, 6.771 mg/L.
+  it.each([
+    [100, 6.771],
+    [95, 6.432],
+    [120, 8.125],
+    [0, 0],
+  ])('of %d %% is %d mg/L', (percent, mgPerL) => {
+    expect(Math.abs((oxygenMgPerLOfPercent(percent, 35, 25) ?? NaN) - mgPerL)).toBeLessThan(0.002);
+  });
+
+  it.each([
+    [-1, 35, 25],
+    [95, 43, 25],
+    [95, 35, -0.5],
+    [NaN, 35, 25],
+  ])('is not told of %d %% at salinity %d and %d degC', (percent, salinity, temperatureC) => {
+    expect(oxygenMgPerLOfPercent(percent, salinity, temperatureC)).toBeNull();
   });
 });

@@ -71,6 +71,18 @@ export function LaneGround({ model }: { model: LaneModel }) {
           </Text>
         </G>
       ))}
+      {model.emptyWords !== null && (
+        <Text
+          x={(plot.left + plot.right) / 2}
+          y={plot.bottom - 8}
+          textAnchor="middle"
+          fill={color.inkSoft}
+          fontFamily={fonts.text}
+          fontSize={noteSize}
+        >
+          {model.emptyWords}
+        </Text>
+      )}
       {model.band && <Band band={model.band} plot={plot} />}
       {model.limits.map((limit) => (
         <Limit key={limit.label} limit={limit} plot={plot} />

@@ -1,11 +1,13 @@
 import { describe, expect, it } from 'vitest';
 import type { HandDose, Test } from '#shared/contract/records.ts';
 import type { Points, Quantity, Run, Series } from '#shared/contract/telemetry.ts';
+import { laneModel } from '../../../components/charts/lane-model.ts';
 import { dosesByDay, dosesByPortion } from '../../../components/overlay/dose-days.ts';
 import { doseLane, showsPortions } from '../../../components/overlay/dose-lane.ts';
 import { fetchWindow, pointCount } from '../../../components/overlay/fetch-window.ts';
 import { nutrientLane } from '../../../components/overlay/nutrient-lane.ts';
 import { groupProbes, probeLane } from '../../../components/overlay/probe-lanes.ts';
+import { salinityColumns } from '../../../components/overlay/salinity-lane.ts';
 import { rangeSentence } from '../../../components/overlay/range-sentence.ts';
 
 const hourMs = 3_600_000;
@@ -185,6 +187,23 @@ describe('groupProbes', () => {
       ['y', 'lx', true],
     ]);
   });
+  it('adds a lane of salinity where conductivity and temperature are measured', () => {
+    const both = [series('c', 'conductivity', 'mS/cm'), series('t', 'temperature', 'degC')];
+    const salinity = groupProbes(both).at(-1);
+    expect(salinity).toMatchObject({ title: 'Salinity, computed', folded: true });
+    const points = (mean: number[]): Points => ({ resolutionMs: 0, t: [1], min: mean, mean, max: mean, count: [1] });
+    const lane =
+      salinity &&
+      probeLane(
+        salinity,
+        new Map([
+          ['c', points([42.914])],
+          ['t', points([15])],
+        ]),
+      );
+    expect(lane?.traces[0]?.columns.mean[0]).toBeCloseTo(35, 2);
+    expect(groupProbes(both.slice(1)).map((group) => group.title)).toEqual(['Temperature']);
+  });
   it('draws a lane before its points are here', () => {
     const [group] = groupProbes([series('t', 'temperature', 'degC')]);
     const lane = group && probeLane(group, new Map());
@@ -232,5 +251,35 @@ describe('rangeSentence', () => {
     );
     const below = nutrientLane('phosphate', [test(1, 'phosphate', 0.02, { below: true })]);
     expect(rangeSentence('Last 7 days', range, 'UTC', [below], dose)).toBe('Last 7 days: phosphate under 0.02 (one test), 42.0 mL given.');
+  });
+});
+
+describe('salinityColumns', () => {
+  const columns = (t: number[], mean: number[], resolutionMs = 60_000) => ({
+    resolutionMs,
+    t,
+    min: mean,
+    mean,
+    max: mean,
+    count: t.map(() => 2),
+  });
+
+  it('joins what is of the same time, and leaves out a probe in air', () => {
+    const joined = salinityColumns(columns([1, 2, 3], [42.914, 0, 42.914]), columns([2, 3, 4], [15, 15, 15]));
+    expect(joined.t).toEqual([3]);
+    expect(joined.mean[0]).toBeCloseTo(35, 2);
+    expect(joined.count).toEqual([2]);
+  });
+  it('joins nothing of buckets of another width', () => {
+    expect(salinityColumns(columns([1], [42.914]), columns([1], [15], 900_000)).t).toEqual([]);
+  });
+});
+
+describe('a lane without tests', () => {
+  const frame = { range, zone: 'UTC', widthPx: 400, heightPx: 96, remPx: 16 };
+  const words = (tests: readonly Test[] | undefined) => laneModel(nutrientLane('nitrate', tests), frame).emptyWords;
+
+  it('says so, once it is known that there is none', () => {
+    expect([words([]), words([test(1, 'nitrate', 5)]), words(undefined)]).toEqual(['no test yet', null, null]);
   });
 });

@@ -126,6 +126,24 @@ describe('probeRows', () => {
   });
 });
 
+describe('what follows from probes', () => {
+  const water = [
+    series({ id: 't', lastValue: 25, lastT: nowMs - 60_000 }),
+    series({ id: 'c', quantity: 'conductivity', channel: 'conductivity', lastValue: 53, lastT: nowMs - 120_000 }),
+    series({ id: 'o', quantity: 'oxygen-percent', channel: 'oxygen', lastValue: 95 }),
+  ];
+
+  it('is salinity, after conductivity, as fresh as the older reading', () => {
+    const rows = probeRows(water, 'UTC', nowMs);
+    expect(rows.map((row) => row.name)).toEqual(['Temperature', 'Conductivity', 'Salinity', 'Oxygen saturation']);
+    expect(rows[2]).toMatchObject({ value: '34.9, computed', age: '2 min ago', isOld: false });
+  });
+  it('is oxygen in mg/L beside its per cent, where salinity is known', () => {
+    expect(probeRows(water, 'UTC', nowMs)[3]?.value).toBe('95 %, 6.4 mg/L');
+    expect(probeRows(water.slice(2), 'UTC', nowMs)[0]?.value).toBe('95 %');
+  });
+});
+
 describe('bottleRows', () => {
   it.each([
     [{}, '120 mL left', 'lasts to 9 March'],
@@ -182,6 +200,10 @@ describe('firstChecklist', () => {
     const byHand = { ...system, status: { ...status, carbonHeads: 0 } };
     expect(firstChecklist({ ...facts, system: byHand })?.[2]?.isDone).toBe(false);
     expect(firstChecklist({ ...facts, system: byHand, hasHandDose: true })).toBeNull();
+  });
+  it('makes room for an alarm', () => {
+    const inAlarm = { ...system, status: { ...status, openAlarms: 1 } };
+    expect(firstChecklist({ ...facts, system: inAlarm, hasLimit: false })).toBeNull();
   });
   it('asks for a test of both', () => {
     expect(firstChecklist({ ...facts, system: { ...system, status: { ...status, phosphate: null } } })?.[1]?.isDone).toBe(false);

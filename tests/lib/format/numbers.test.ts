@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { formatMl, formatMlOf } from '../../../lib/format/millilitres.ts';
 import { decimalsFor, formatNumber } from '../../../lib/format/number.ts';
 import { formatBand, formatNutrient, placeInBand } from '../../../lib/format/nutrient.ts';
-import { formatSeriesValue, seriesName, seriesUnit } from '../../../lib/format/series-value.ts';
+import { formatSeriesValue, seriesName, seriesNameAmong, seriesUnit } from '../../../lib/format/series-value.ts';
 
 describe('formatNumber', () => {
   it.each([
@@ -85,5 +85,18 @@ describe('measured values', () => {
     expect(seriesName({ quantity: 'ph', unit: 'pH', name: null, channel: 'ph' })).toBe('pH');
     expect(seriesName({ quantity: null, unit: 'lx', name: null, channel: 'lux:1' })).toBe('lux:1');
     expect(seriesUnit({ quantity: null, unit: 'lx' })).toBe('lx');
+  });
+});
+
+describe('a series among others', () => {
+  const power = (channel: string, name: string | null = null) => ({ quantity: 'power' as const, unit: 'W', channel, name });
+
+  it('is told by its channel where another measures the same', () => {
+    const all = [power('power-skimmer'), power('power_return'), power('heater.power', 'Heater'), power('power')];
+    expect(all.map((one) => seriesNameAmong(one, all))).toEqual(['Power, skimmer', 'Power, return', 'Heater', 'Power']);
+  });
+
+  it('needs no more than its quantity when it is the only one', () => {
+    expect(seriesNameAmong(power('power-skimmer'), [power('power-skimmer')])).toBe('Power');
   });
 });
