@@ -58,7 +58,7 @@ export function LimitEditor({
             unit="mL"
             text={form.softText}
             onChange={(softText) => setForm({ ...form, softText })}
-            hint="Over it somebody is called."
+            hint="Over it an alarm shows here."
             error={errors.soft ?? fieldError(put.error, 'soft')}
           />
           <DecimalField

@@ -13,7 +13,7 @@ export const limitMeanings: Record<AlarmCode, string> = {
 
 /** `4.3 of 10.5 mL now; soft 9.2 mL, hard 10.5 mL, from the schedule` */
 export function limitSentence(rule: AlarmRule): string | null {
-  if (!rule.enabled) return 'Switched off: nobody is called, and nothing is stopped.';
+  if (!rule.enabled) return 'Switched off: no alarm shows, and nothing is stopped.';
   if (rule.unit !== 'mL') return rule.interlock ? 'Stops every carbon head when it goes off.' : null;
   const soft = rule.effectiveSoft;
   const hard = rule.effectiveHard;

@@ -24,7 +24,7 @@ export function LimitsPart({ systemId, role }: { systemId: string; role: Role })
   return (
     <div style={{ display: 'flex', flexDirection: 'column', gap: 8 }}>
       <Text soft>
-        Over soft somebody is called. Over hard every carbon head is stopped, and stays stopped until a keeper finds the cause, resets the
+        Over soft an alarm shows here. Over hard every carbon head is stopped, and stays stopped until a keeper finds the cause, resets the
         alarm and resumes. The pump keeps ceilings of its own besides.
       </Text>
       {rules.data.map((rule) => (

@@ -33,7 +33,7 @@ export function ShelveForm({ alarm, onDone }: { alarm: Alarm; onDone: () => void
   }
   return (
     <Form name="Keep quiet" onSubmit={send}>
-      {isInterlock ? <Text>This keeps the call quiet. What is stopped stays stopped.</Text> : null}
+      {isInterlock ? <Text>This keeps the alarm quiet. What is stopped stays stopped.</Text> : null}
       <RadioGroup legend="For how long?" value={hours} onChange={setHours} options={offered} />
       <Field label="Why?" value={reason} onChange={setReason} maxLength={500} required error={fieldError(shelve.error, 'reason')} />
       {shelve.isError && !isSaidAtFields(shelve.error) ? <Notice error={shelve.error} /> : null}

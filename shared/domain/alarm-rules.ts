@@ -48,7 +48,7 @@ export const alarmRuleDefaults: Record<AlarmCode, AlarmRuleDefault> = {
     offDelaySeconds: 0,
     deadband: 0,
   },
-  // The delay lets a pump that only lost its connection come back before anybody is called.
+  // The delay lets a pump that only lost its connection come back before an alarm shows.
   'device-offline': {
     priority: { soft: 'medium' },
     interlock: false,
