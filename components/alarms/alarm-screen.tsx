@@ -39,7 +39,7 @@ export function AlarmScreen({ systemId, alarmId }: { systemId: string; alarmId: 
       {alarm === undefined || system === undefined ? null : (
         <>
           <AlarmHead alarm={alarm} system={system} nowMs={nowMs} />
-          <AlarmAdvice alarm={alarm} />
+          <AlarmAdvice alarm={alarm} status={system.status} />
           <AlarmActions alarm={alarm} system={system} nowMs={nowMs} />
           <AlarmEvidence alarm={alarm} timeZone={system.timeZone} nowMs={nowMs} />
           <AlarmTransitions transitions={detail.data?.transitions ?? []} timeZone={system.timeZone} nowMs={nowMs} />

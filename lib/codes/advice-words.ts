@@ -1,4 +1,10 @@
+import type { SystemStatus } from '#shared/contract/systems.ts';
 import type { Advice } from '#shared/domain/first-advice.ts';
+
+/** Whether every carbon head is stopped and its pump has said so: only then is asking for a stop no advice any more. */
+export function isStopProved({ stoppedHeads, carbonHeads, unconfirmedStops }: SystemStatus): boolean {
+  return stoppedHeads > 0 && stoppedHeads >= carbonHeads && unconfirmedStops === 0;
+}
 
 /** First advice as a sentence to follow. */
 export function adviceSentence(advice: Advice): string {
