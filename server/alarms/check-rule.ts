@@ -36,13 +36,13 @@ export function checkRule(rule: EffectiveRule, given: { unit?: string | undefine
 const shown = (value: number) => String(Math.round(value * 1000) / 1000);
 
 /** The most that a hard limit may be without an owner: what comes from the plan, or what the label's dose comes to. */
-export interface KeptUnder {
+interface KeptUnder {
   /** In the unit of the rule; null when nothing tells. */
   mostHard: number | null;
 }
 
-/** Numbers closer than this are the same: limits are shown rounded to it. */
-const SAME = 1e-6;
+/** Screens show limits in hundredths: one that is typed as it is shown is the same. */
+const SAME = 0.005;
 const DEADBAND_SHARE = 0.1;
 
 /**

@@ -124,6 +124,8 @@ describe('an interlock', () => {
       message: expect.stringContaining('7.5 mL') as string,
     });
     expect(await put('volume-day', { hard: 7.5 })).toMatchObject({ effectiveHard: 7.5 });
+    // As a screen shows it, in hundredths.
+    expect(await put('volume-day', { hard: 7.504 })).toMatchObject({ hard: 7.504 });
     await put('volume-day', { hard: 9 }, 'owner');
     expect(await put('volume-day', { hard: 9, offDelaySeconds: 5 })).toMatchObject({ hard: 9, offDelaySeconds: 5 });
     await expect(put('volume-day', { hard: 9.5 })).rejects.toMatchObject({ rule: 'interlock-owner-only' });
