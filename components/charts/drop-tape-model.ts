@@ -1,4 +1,5 @@
 import type { ExtraDose, Slot, Tape } from '#shared/contract/telemetry.ts';
+import { scrollBetweenLabels } from './tape-labels.ts';
 import { timeScale } from './time-axis.ts';
 import { timeTicks } from './time-ticks.ts';
 
@@ -169,16 +170,22 @@ export function tapeModel(tape: Tape, { widthPx, remPx, zone, nowMs }: TapeFrame
   const contentPx = Math.max(widthPx, Math.ceil(neededPx));
   const { toX } = timeScale({ fromMs: tape.fromT, toMs: tape.toT }, edgePx, contentPx - 2 * edgePx);
   const nowX = toX(Math.min(Math.max(nowMs, tape.fromT), tape.toT));
+  const hours = timeTicks({ fromMs: tape.fromT, toMs: tape.toT }, zone, contentPx / (3.5 * remPx)).map((tick) => ({
+    x: toX(tick.tMs),
+    label: tick.strong ? '00:00' : tick.label,
+    isDayStart: tick.strong,
+  }));
+  const scrollX = Math.min(Math.max(nowX - nowShare * widthPx, 0), contentPx - widthPx);
   return {
     widthPx: contentPx,
     boxPx: box ?? leastBoxPx,
     nowX,
-    scrollX: Math.min(Math.max(nowX - nowShare * widthPx, 0), contentPx - widthPx),
-    hours: timeTicks({ fromMs: tape.fromT, toMs: tape.toT }, zone, contentPx / (3.5 * remPx)).map((tick) => ({
-      x: toX(tick.tMs),
-      label: tick.strong ? '00:00' : tick.label,
-      isDayStart: tick.strong,
-    })),
+    scrollX: scrollBetweenLabels(
+      hours.map((hour) => hour.x),
+      scrollX,
+      remPx,
+    ),
+    hours,
     lines: lines.map((line) => {
       const drawn = box === null ? line.items.filter((item) => item.plannedMl === 0 || singles.has(item.kind)) : line.items;
       const [withHead] = line.items.filter((item) => item.head !== null);

@@ -4,6 +4,7 @@ import { fonts } from '../../../constants/fonts.ts';
 import { formatNumber } from '../../../lib/format/number.ts';
 import { millilitreDecimals } from '../../../lib/format/millilitres.ts';
 import type { TapeBar, TapeDrop, TapeLine, TapeModel } from '../drop-tape-model.ts';
+import { tapeLabels } from '../tape-labels.ts';
 import { DropMark } from './drop-mark.tsx';
 import { noteSize } from './lane-ground.tsx';
 
@@ -82,26 +83,16 @@ export function TapeLineSvg({ model, line, remPx, isStill }: { model: TapeModel;
 
 /** Hours under the tape, and where now is. */
 export function TapeHours({ model, remPx }: { model: TapeModel; remPx: number }) {
-  const nowRoom = 2.2 * remPx;
+  const { hours, now } = tapeLabels(model, remPx);
   return (
     <Svg width={model.widthPx} height={1.25 * remPx} aria-hidden>
-      {model.hours
-        .filter((hour) => Math.abs(hour.x - model.nowX) > nowRoom)
-        .map((hour) => (
-          <Text
-            key={hour.x}
-            x={Math.max(hour.x, 0)}
-            y={remPx}
-            textAnchor={hour.x < nowRoom ? 'start' : hour.x > model.widthPx - nowRoom ? 'end' : 'middle'}
-            fontFamily={fonts.text}
-            fontSize={noteSize}
-            fill={color.inkSoft}
-          >
-            {hour.label}
-          </Text>
-        ))}
-      <Text x={model.nowX} y={remPx} textAnchor="middle" fontFamily={fonts.text} fontSize={noteSize} fontWeight="700" fill={color.ink}>
-        now
+      {hours.map((hour) => (
+        <Text key={hour.key} x={hour.x} y={remPx} textAnchor="middle" fontFamily={fonts.text} fontSize={noteSize} fill={color.inkSoft}>
+          {hour.label}
+        </Text>
+      ))}
+      <Text x={now.x} y={remPx} textAnchor="middle" fontFamily={fonts.text} fontSize={noteSize} fontWeight="700" fill={color.ink}>
+        {now.label}
       </Text>
     </Svg>
   );
