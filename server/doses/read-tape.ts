@@ -41,7 +41,11 @@ async function readStops(reader: Reader, { systemId, fromMs, toMs }: TapeRange):
     .selectFrom('headStop as stop')
     .leftJoin('deviceState as state', 'state.deviceId', 'stop.deviceId')
     .leftJoin('scheduleVersion as running', (join) =>
-      join.onRef('running.deviceId', '=', 'stop.deviceId').onRef('running.version', '=', 'state.scheduleVersion'),
+      join
+        .onRef('running.deviceId', '=', 'stop.deviceId')
+        .onRef('running.version', '=', 'state.scheduleVersion')
+        // One from before has the head off for an earlier stop, which the pump may have left behind since.
+        .onRef('running.fromMs', '>=', 'stop.stoppedAtMs'),
     )
     .select([
       'stop.deviceId',

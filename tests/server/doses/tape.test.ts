@@ -168,6 +168,19 @@ describe('the drop tape', () => {
     expect((await marks()).at(-1)).toEqual([16, 'held']);
   });
 
+  it('takes no version from before a stop for its proof, though it has the head off', async () => {
+    await heard();
+    await scene.stops.stop(scene.systemId, undefined, keeper);
+    const versions = await scene.opened.core.reader.selectFrom('scheduleVersion').select('version').orderBy('version').execute();
+    const scheduleVersion = versions.at(-1)?.version;
+    const stoppedAtMs = scene.clock.nowMs() + 1;
+    await scene.opened.core.writer.commit((tx) => {
+      tx.run(query.updateTable('deviceState').set({ scheduleVersion }));
+      tx.run(query.updateTable('headStop').set({ stoppedAtMs }));
+    });
+    expect((await marks()).at(-1)).toEqual([16, 'unheard']);
+  });
+
   it('begins and ends the day where the site does, also when its clocks change', async () => {
     const far = await openPumpScene({ timeZone: 'Europe/Berlin', startMs: Date.parse('2026-03-29T12:00:00Z') });
     try {

@@ -115,6 +115,17 @@ describe('whether a device is online', () => {
   });
 });
 
+it('proves a stop by no state that a broker had kept, which may be older than the stop', async () => {
+  const told: boolean[] = [];
+  await scene.close();
+  scene = await openIngestScene({ onState: () => void told.push(true) });
+  const state = { online: true, atMs: nowMs, heads: [{ ...head, state: 'stopped' }] };
+  await scene.send('state', state, { retained: true });
+  expect(told).toEqual([]);
+  await scene.send('state', state);
+  expect(told).toEqual([true]);
+});
+
 it('hands a receipt to the orders within the same unit', async () => {
   const receipts: unknown[] = [];
   await scene.close();
