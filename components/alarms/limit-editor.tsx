@@ -10,7 +10,7 @@ import { Notice } from '../ui/notice.tsx';
 import { RadioGroup } from '../ui/radio-group.tsx';
 import { Text } from '../ui/text.tsx';
 import { limitFormOf, type LimitField, readLimitForm } from './limit-form.ts';
-import { limitMeanings } from './limit-words.ts';
+import { limitMeanings, scheduleLimitsSentence } from './limit-words.ts';
 
 const sources = [
   { value: 'schedule', label: 'From the schedule', hint: 'follows every change of the dose' },
@@ -33,6 +33,7 @@ export function LimitEditor({
   const [form, setForm] = useState(() => limitFormOf(rule));
   const [errors, setErrors] = useState<Partial<Record<LimitField, string>>>({});
   const takesNumbers = rule.unit === 'mL';
+  const scheduleLimits = scheduleLimitsSentence(rule);
 
   function save(): void {
     const read = readLimitForm(rule, form);
@@ -51,6 +52,7 @@ export function LimitEditor({
           options={sources}
         />
       ) : null}
+      {takesNumbers && scheduleLimits !== null ? <Text figures>{scheduleLimits}</Text> : null}
       {takesNumbers && !form.fromSchedule ? (
         <>
           <DecimalField

@@ -25,3 +25,17 @@ export function limitSentence(rule: AlarmRule): string | null {
   const source = rule.soft === null && rule.hard === null ? 'from the schedule' : 'set by hand';
   return `${counted}${limits}, ${source}.`;
 }
+
+/** What stands beside numbers of one's own: what was planned and given in the window, and the limits that would follow from the schedule. */
+export function scheduleLimitsSentence({ code, fromSchedule, current }: AlarmRule): string | null {
+  if (fromSchedule === null || current === null) return null;
+  const { planned, soft, hard } = fromSchedule;
+  const counted = `${formatMl(planned)} planned and ${formatMl(current)} given in ${windowWords(code)}.`;
+  if (soft === null || hard === null) return `${counted} Without a schedule no limit follows from it.`;
+  return `${counted} From the schedule it would be soft ${formatMl(soft)}, hard ${formatMl(hard)}.`;
+}
+
+function windowWords(code: AlarmCode): string {
+  if (code === 'volume-hour') return 'the last hour';
+  return code === 'volume-day' ? 'the last 24 h' : 'the last 7 days';
+}

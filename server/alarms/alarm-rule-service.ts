@@ -44,12 +44,15 @@ export function createAlarmRuleService({ writer, clock }: Core, modules: readonl
 
   function present(context: Omit<RuleContext, 'ruleFor'>, rule: EffectiveRule): AlarmRule {
     const standing = standingOf(context, rule);
+    const fromPlan = rule.soft === null && rule.hard === null ? standing : standingOf(context, { ...rule, soft: null, hard: null });
     const { code, target, enabled, priority, soft, hard, unit, interlock, onDelaySeconds, offDelaySeconds, deadband } = rule;
     return {
       ...{ code, target, enabled, priority, soft, hard, unit, interlock, onDelaySeconds, offDelaySeconds, deadband },
       isDefault: isSame(rule, defaultRule(code, target)),
       effectiveSoft: shownMl(standing?.soft),
       effectiveHard: shownMl(standing?.hard),
+      fromSchedule:
+        fromPlan === undefined ? null : { planned: roundMl(fromPlan.planned), soft: shownMl(fromPlan.soft), hard: shownMl(fromPlan.hard) },
       current: shownMl(standing?.current),
     };
   }

@@ -67,5 +67,7 @@ export interface ClosedFinding {
 export interface Standing {
   soft: number | null;
   hard: number | null;
+  /** What the schedules planned in the window, and what was given in it. */
+  planned: number;
   current: number;
 }

@@ -74,7 +74,7 @@ export function volumeRule(code: AlarmCode, window: VolumeWindow): AlarmRuleModu
     },
     standing(context) {
       const { limits, counted } = measure(context.carbon(), context.nowMs, numbersOf(context));
-      return { soft: limits.softMl, hard: limits.hardMl, current: counted.givenMl };
+      return { soft: limits.softMl, hard: limits.hardMl, planned: counted.plannedMl, current: counted.givenMl };
     },
   };
 }

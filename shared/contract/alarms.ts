@@ -81,6 +81,11 @@ export const alarmRuleSchema = z.object({
   /** The limits that hold now, with `null` resolved from the schedules in force; null where they cannot be told. */
   effectiveSoft: z.number().nullable(),
   effectiveHard: z.number().nullable(),
+  /**
+   * What the schedules planned in the current window, and the limits that follow from them, set by hand or not, in `unit`; null where
+   * the rule counts nothing.
+   */
+  fromSchedule: z.object({ planned: z.number(), soft: z.number().nullable(), hard: z.number().nullable() }).nullable(),
   /** What has been counted in the current window, in `unit`; null where the rule counts nothing. */
   current: z.number().nullable(),
 });

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { AlarmRule } from '#shared/contract/alarms.ts';
 import { limitFormOf, readLimitForm } from '../../../components/alarms/limit-form.ts';
-import { limitSentence } from '../../../components/alarms/limit-words.ts';
+import { limitSentence, scheduleLimitsSentence } from '../../../components/alarms/limit-words.ts';
 
 const rule: AlarmRule = {
   code: 'volume-day',
@@ -18,6 +18,7 @@ const rule: AlarmRule = {
   isDefault: true,
   effectiveSoft: 9.24,
   effectiveHard: 10.5,
+  fromSchedule: { planned: 8.4, soft: 9.24, hard: 10.5 },
   current: 4.3,
 };
 
@@ -56,5 +57,19 @@ describe('the sentence of a limit', () => {
   it('does not hide that a limit is off, or that nothing is planned', () => {
     expect(limitSentence({ ...rule, enabled: false })).toContain('Switched off');
     expect(limitSentence({ ...rule, effectiveSoft: null, effectiveHard: null })).toContain('any delivery');
+  });
+});
+
+describe("what numbers of one's own stand beside", () => {
+  it('is what was planned and given, and the limits that would follow', () => {
+    expect(scheduleLimitsSentence({ ...rule, soft: 2, hard: 3, effectiveSoft: 2, effectiveHard: 3 })).toBe(
+      '8.4 mL planned and 4.3 mL given in the last 24 h. From the schedule it would be soft 9.2 mL, hard 10.5 mL.',
+    );
+  });
+
+  it('says that nothing follows without a schedule, and is silent where nothing is counted', () => {
+    const bare = { ...rule, fromSchedule: { planned: 0, soft: null, hard: null } };
+    expect(scheduleLimitsSentence(bare)).toContain('Without a schedule no limit follows from it.');
+    expect(scheduleLimitsSentence({ ...rule, fromSchedule: null, current: null })).toBeNull();
   });
 });

@@ -61,7 +61,14 @@ describe('the rules of a system', () => {
 describe('setting a limit', () => {
   it('takes effect at once, and is kept as a revision and in the audit trail', async () => {
     const rule = await put('volume-day', { soft: 5, hard: 5.5 });
-    expect(rule).toMatchObject({ soft: 5, hard: 5.5, effectiveSoft: 5, effectiveHard: 5.5, isDefault: false });
+    expect(rule).toMatchObject({
+      soft: 5,
+      hard: 5.5,
+      effectiveSoft: 5,
+      effectiveHard: 5.5,
+      fromSchedule: { planned: 6, soft: 6.6, hard: 7.5 },
+      isDefault: false,
+    });
     await bench.alarms.settled();
     expect((await bench.open()).map((alarm) => `${alarm.code} ${alarm.limitKind}`)).toEqual(['volume-day hard', 'volume-day soft']);
     expect(bench.port.stops).toHaveLength(1);
