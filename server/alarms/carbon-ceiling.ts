@@ -1,7 +1,7 @@
-import { doseCeilingMlPerDay } from '#shared/domain/dose-ceiling.ts';
 import { netVolumeLitres } from '#shared/domain/net-volume.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
+import { productCeilingMlPerDay } from '../products/product-ceiling.ts';
 
 /**
  * The most that a system should get in a day, mL: the label dose of what its carbon heads give (of several products the
@@ -22,7 +22,7 @@ export function carbonCeilingMlPerDay(tx: Transaction, systemId: string): number
       .where('toMs', 'is', null),
   );
   const ceilings = [...new Set(heads.map((head) => head.productId))].flatMap((productId) => {
-    const ceilingMl = productId === null ? null : productCeilingMl(tx, productId, netLitres);
+    const ceilingMl = productId === null ? null : productCeilingMlPerDay(tx, productId, netLitres);
     return ceilingMl === null ? [] : [ceilingMl];
   });
   if (ceilings.length === 0) return null;
@@ -33,25 +33,6 @@ export function carbonCeilingMlPerDay(tx: Transaction, systemId: string): number
       heads.map((head) => head.headId),
     ),
   );
-}
-
-function productCeilingMl(tx: Transaction, productId: string, netLitres: number): number | null {
-  const product = tx.first(
-    query
-      .selectFrom('productRevision')
-      .select(['labelMl', 'labelMaxMl', 'labelPerLitres', 'labelPerDays', 'carbonMgPerMl'])
-      .where('productId', '=', productId)
-      .orderBy('fromMs', 'desc')
-      .orderBy('id', 'desc')
-      .limit(1),
-  );
-  if (product === undefined) return null;
-  const { labelMl, labelMaxMl, labelPerLitres, labelPerDays, carbonMgPerMl } = product;
-  const label =
-    labelMl === null || labelPerLitres === null || labelPerDays === null
-      ? null
-      : { ml: labelMl, maxMl: labelMaxMl, perLitres: labelPerLitres, perDays: labelPerDays };
-  return doseCeilingMlPerDay({ label, carbonMgPerMl, netLitres });
 }
 
 /** What the heads give in a day where an owner wrote down why it may be more than the label says; else 0. */

@@ -1,6 +1,9 @@
 import type { Generated, Insertable, Selectable } from 'kysely';
 
-/** Row types of every table. Column names and row types share one case. Times are UTC epoch milliseconds; flags are 0 or 1. */
+/**
+ * Row types of every table. Column names and row types share one case. Times are UTC epoch milliseconds; flags are 0 or 1.
+ * In one file, long as it is, because it is read as one picture and changes together with a migration.
+ */
 
 export interface UserTable {
   id: string;

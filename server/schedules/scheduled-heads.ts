@@ -1,7 +1,7 @@
-import { doseCeilingMlPerDay } from '#shared/domain/dose-ceiling.ts';
 import { netVolumeLitres, type Volumes } from '#shared/domain/net-volume.ts';
 import { query } from '../db/open.ts';
 import type { Transaction } from '../db/writer.ts';
+import { productCeilingMlPerDay } from '../products/product-ceiling.ts';
 
 /** A head in use on a system, with the dose set for it now and the most that it should give. */
 export interface ScheduledHead {
@@ -42,20 +42,4 @@ export function scheduledHeads(tx: Transaction, system: Volumes & { id: string }
     mlPerDay: mlPerDay ?? 0,
     ceilingMlPerDay: productId === null || netLitres === null ? null : productCeilingMlPerDay(tx, productId, netLitres),
   }));
-}
-
-function productCeilingMlPerDay(tx: Transaction, productId: string, netLitres: number): number | null {
-  const revision = tx.first(
-    query
-      .selectFrom('productRevision')
-      .select(['labelMl', 'labelMaxMl', 'labelPerLitres', 'labelPerDays', 'carbonMgPerMl'])
-      .where('productId', '=', productId)
-      .orderBy('fromMs', 'desc')
-      .orderBy('id', 'desc')
-      .limit(1),
-  );
-  if (revision === undefined) return null;
-  const { labelMl: ml, labelMaxMl: maxMl, labelPerLitres: perLitres, labelPerDays: perDays, carbonMgPerMl } = revision;
-  const label = ml === null || perLitres === null || perDays === null ? null : { ml, maxMl, perLitres, perDays };
-  return doseCeilingMlPerDay({ label, carbonMgPerMl, netLitres });
 }

@@ -1,26 +1,17 @@
 import { AxeBuilder } from '@axe-core/playwright';
-import { type Browser, chromium, type Page } from 'playwright-core';
+import type { Browser, Page } from 'playwright-core';
 import { expect } from 'vitest';
+
+declare global {
+  interface Window {
+    /** Put into each page by `openPage`. */
+    reportViolation(text: string): void;
+  }
+}
 
 /** The two widths at which everything is looked at. */
 export const widths = { phone: { width: 390, height: 844 }, wide: { width: 1280, height: 860 } } as const;
 export type Width = keyof typeof widths;
-
-/** Debian's Chromium, kept from talking to anything but the server under test. */
-export function launchBrowser(): Promise<Browser> {
-  return chromium.launch({
-    executablePath: '/usr/bin/chromium',
-    args: [
-      '--no-sandbox',
-      '--disable-gpu',
-      '--disable-quic',
-      '--disable-background-networking',
-      '--disable-component-update',
-      '--disable-sync',
-      '--no-first-run',
-    ],
-  });
-}
 
 export interface WatchedPage {
   page: Page;
@@ -44,8 +35,7 @@ export async function openPage(browser: Browser, url: string, width: Width): Pro
   await page.exposeFunction('reportViolation', (text: string) => faults.push(`policy: ${text}`));
   await page.addInitScript(() => {
     document.addEventListener('securitypolicyviolation', (event) => {
-      const report = (window as unknown as { reportViolation(text: string): void }).reportViolation;
-      report(`${event.violatedDirective} ${event.blockedURI}`);
+      window.reportViolation(`${event.violatedDirective} ${event.blockedURI}`);
     });
   });
   return {

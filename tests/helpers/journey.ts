@@ -1,9 +1,10 @@
 import { existsSync } from 'node:fs';
 import type { Browser } from 'playwright-core';
 import type { Role } from '#shared/domain/role.ts';
+import { launchChromium } from '../../scripts/screenshots/browser.ts';
 import { createPasswordHasher } from '../../server/auth/password-hasher.ts';
 import { query } from '../../server/db/open.ts';
-import { launchBrowser, openPage, signIn, type WatchedPage, type Width } from './browser.ts';
+import { openPage, signIn, type WatchedPage, type Width } from './browser.ts';
 import { type DeviceProcess, startDeviceProcess } from './device-process.ts';
 import { startTestServer, type TestPerson, type TestServer } from './server.ts';
 
@@ -44,7 +45,7 @@ function shownOnce(credentials: { username: string; password: string | null }): 
 export async function startJourney(): Promise<Journey> {
   if (!existsSync('dist/index.html')) throw new Error('The app is not built: node scripts/setup/build-web-main.mjs');
   const server = await startTestServer();
-  const browser = await launchBrowser();
+  const browser = await launchChromium();
   const passwordHash = await createPasswordHasher().hash(password);
   const devices: DeviceProcess[] = [];
 
